@@ -1,0 +1,1 @@
+"""Floor 5: one small file a command: options, one library call, printing, exit codes."""

@@ -1,0 +1,76 @@
+"""Numbers as people read them: the one place where values become text.
+
+Prose, tables, figures and pages all call these, so one number never appears in two shapes.
+"""
+
+from __future__ import annotations
+
+import math
+
+__all__ = ["MISSING", "count", "counts", "effect", "interval", "p_value", "percent", "probability"]
+
+MISSING = "-"
+
+
+def effect(value: float | None) -> str:
+    """An effect size or a bound of one: two decimals, three below 0.1 in size; ±∞ as words."""
+    if value is None or math.isnan(value):
+        return MISSING
+    if math.isinf(value):
+        return "-inf" if value < 0 else "inf"
+    digits = 2 if abs(value) >= 0.0995 or value == 0 else 3
+    return _signless_zero(f"{value:.{digits}f}")
+
+
+def interval(low: float | None, high: float | None) -> str:
+    """Two bounds in brackets."""
+    if low is None or high is None:
+        return MISSING
+    return f"[{effect(low)}, {effect(high)}]"
+
+
+def probability(value: float | None) -> str:
+    """A probability to two decimals; never a rounded 0 or 1."""
+    if value is None or math.isnan(value):
+        return MISSING
+    if 0 < value < 0.005:
+        return "<.01"
+    if 0.995 <= value < 1:
+        return ">.99"
+    return f"{value:.2f}".removeprefix("0") if value < 1 else "1"
+
+
+def percent(value: float) -> str:
+    """A probability as whole per cent, for sentences."""
+    if 0 < value < 0.005:
+        return "less than 1%"
+    if 0.995 <= value < 1:
+        return "more than 99%"
+    return f"{value:.0%}"
+
+
+def p_value(value: float | None) -> str:
+    """A p-value to three decimals, "<.001" below."""
+    if value is None or math.isnan(value):
+        return MISSING
+    if value < 0.0005:
+        return "<.001"
+    return f"{value:.3f}".removeprefix("0") if value < 0.9995 else "1"
+
+
+def count(value: int | None) -> str:
+    """A number of participants with thousands parted by commas."""
+    return MISSING if value is None else f"{value:,}"
+
+
+def counts(values: list[int] | tuple[int, ...] | None) -> str:
+    """Group sizes: one number where they are equal, else joined by "+"."""
+    if values is None:
+        return MISSING
+    if len(set(values)) == 1:
+        return count(values[0])
+    return " + ".join(count(v) for v in values)
+
+
+def _signless_zero(text: str) -> str:
+    return text.removeprefix("-") if float(text) == 0 else text
