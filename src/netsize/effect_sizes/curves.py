@@ -1,6 +1,6 @@
 """Evidence curves: likelihood and p-band probabilities of many results over one grid of effects.
 
-DESIGN of the exact selection model: for result i and true effect θ, L_i(θ) is the density (or
+For result i and true effect θ, L_i(θ) is the density (or
 interval probability) of what was printed and P_ij(θ) the probability that its p-value falls in
 band j.
 """
