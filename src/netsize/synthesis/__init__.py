@@ -1,0 +1,1 @@
+"""Floor 2: pooling, classical corrections, the exact selection model, diagnostics."""
