@@ -1,0 +1,169 @@
+"""The profile reading of the exact selection model: a confidence distribution for the mean effect.
+
+At each μ the likelihood is maximised over τ and the ω_j; with ℓ(μ) that profile and μ̂ its peak,
+C(μ) = Φ(sign(μ-μ̂) √(2(ℓ(μ̂)-ℓ(μ)))) is the signed-root confidence distribution (Barndorff-Nielsen
+& Cox 1994, ch. 3). Where ℓ levels off below the peak C does not reach 0: no finite lower limit.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from itertools import product
+
+import numpy as np
+from scipy.interpolate import CubicSpline
+from scipy.special import ndtr
+
+from netsize.effect_sizes.metrics import Metric
+from netsize.effect_sizes.records import Evidence
+from netsize.numerics.arrays import Array
+from netsize.numerics.grid import GridDistribution
+from netsize.synthesis.mixing import normal_cdf
+from netsize.synthesis.selection import Literature, Priors, effect_grid, literatures, surface
+
+__all__ = ["ProfileFit", "fit_profile"]
+
+_KEEP = 12.0  # log units below the peak at which the window of μ is cut; Φ(-√24) < 1e-6
+_COARSE = (65, 11, 13)  # points of μ, τ, ω while the windows are drawn
+_FINE = (81, 17, 33)
+_SPREAD = 8  # finer points of the confidence distribution per lattice point
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class ProfileFit:
+    """What the profile reading concludes, on the pooling metric.
+
+    Attributes
+    ----------
+    estimate : μ̂, or -inf where the likelihood keeps rising towards the low end of the grid.
+    heterogeneity, printing : τ̂ and the ω̂_j that go with it.
+    mean : confidence distribution of μ. new_study : of θ ~ N(μ, τ̂(μ)²).
+    log_likelihood : at the peak, up to a constant shared by all fits of the same results.
+    """
+
+    estimate: float
+    heterogeneity: float
+    printing: tuple[float, ...]
+    mean: GridDistribution
+    new_study: GridDistribution
+    log_likelihood: float
+
+
+def fit_profile(
+    evidence: Sequence[Evidence],
+    *,
+    weights: Array,
+    metric: Metric,
+    priors: Priors | None = None,
+    fineness: float = 6.0,
+) -> ProfileFit:
+    """Fit one literature; of the priors only the ranges serve: τ ≤ 4 s_τ, ω in [floor, 1]."""
+    priors = priors or Priors.default(metric)
+    half_line = not metric.signed
+    theta = effect_grid(evidence, priors, half_line=half_line, fineness=fineness)
+    literature = literatures([evidence], [weights], theta=theta, half_line=half_line)[0]
+    margin = 3 * priors.heterogeneity_scale
+    low = 0.0 if half_line else float(theta[0]) + margin
+    whole = (low, float(theta[-1]) - margin)
+    mu_window, tau_top = whole, 4 * priors.heterogeneity_scale
+    for _ in range(3):
+        ridge = _ridge(literature, priors, mu_window, tau_top, _COARSE)
+        near = ridge.height > ridge.height.max() - _KEEP
+        kept = np.flatnonzero(near)
+        step = ridge.mu[1] - ridge.mu[0]
+        drawn = (
+            max(float(ridge.mu[kept[0]] - step), whole[0]),
+            min(float(ridge.mu[kept[-1]] + step), whole[1]),
+        )
+        tau_top = min(tau_top, 1.5 * float(ridge.tau[near].max()) + tau_top / _COARSE[1])
+        shrunk = (drawn[1] - drawn[0]) / (mu_window[1] - mu_window[0])
+        mu_window = drawn
+        if shrunk > 0.6:
+            break
+    ridge = _ridge(literature, priors, mu_window, tau_top, _FINE)
+    return _conclude(ridge, whole, half_line)
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class _Ridge:
+    """Profile over μ: its height, and τ̂ and ω̂ along it."""
+
+    mu: Array
+    height: Array
+    tau: Array
+    log_omega: Array
+
+
+def _ridge(
+    literature: Literature,
+    priors: Priors,
+    mu_window: tuple[float, float],
+    tau_top: float,
+    sizes: tuple[int, int, int],
+) -> _Ridge:
+    mu = np.linspace(*mu_window, sizes[0])
+    tau = np.linspace(0.0, tau_top, sizes[1])
+    axes = literature.bands - 1
+    points = sizes[2] if axes == 1 else max(5, sizes[2] // 3)
+    omega = np.linspace(np.log(priors.printing_floor), 0.0, points)
+    combinations = np.array([(0.0, *c) for c in product(*[omega] * axes)])
+    height = surface(literature, mu=mu, tau=tau, log_weights=combinations)  # (T, M, W)
+    if axes == 1:
+        height, best_omega = _peak(height, omega)
+        best_omega = best_omega[:, :, None]
+    else:
+        best_omega = combinations[height.argmax(axis=2), 1:]
+        height = height.max(axis=2)
+    height, best_tau = _peak(height.T, tau)
+    nearest = np.abs(tau[None, :] - best_tau[:, None]).argmin(axis=1)
+    return _Ridge(mu, height, best_tau, best_omega[nearest, np.arange(mu.size)])
+
+
+def _peak(values: Array, nodes: Array) -> tuple[Array, Array]:
+    """Maximum along the last axis and where: a parabola through the best node and neighbours."""
+    best = values.argmax(axis=-1)
+    middle = np.clip(best, 1, nodes.size - 2)
+    left, centre, right = (
+        np.take_along_axis(values, (middle + s)[..., None], axis=-1)[..., 0] for s in (-1, 0, 1)
+    )
+    bend = left - 2 * centre + right
+    with np.errstate(all="ignore"):
+        shift = np.where(bend < 0, (left - right) / (2 * bend), 0.0)
+    inside = (best == middle) & (np.abs(shift) < 1)
+    shift = np.where(inside, shift, 0.0)
+    height = np.where(inside, centre - 0.25 * (left - right) * shift, values.max(axis=-1))
+    return height, nodes[best] + shift * (nodes[1] - nodes[0])
+
+
+def _conclude(ridge: _Ridge, whole: tuple[float, float], half_line: bool) -> ProfileFit:
+    mu = np.linspace(ridge.mu[0], ridge.mu[-1], (ridge.mu.size - 1) * _SPREAD + 1)
+    height = CubicSpline(ridge.mu, ridge.height)(mu)
+    top = int(height.argmax())
+    root = np.sqrt(2 * np.maximum(height[top] - height, 0.0))
+    cdf = ndtr(np.sign(mu - mu[top]) * root)
+    if half_line and mu[0] == 0.0:
+        # what a signed parameter would put below 0 sits at 0: the effect has no other side
+        mean = GridDistribution.from_cdf(np.concatenate([[0.0], mu]), np.append(0.0, cdf))
+    else:
+        mean = GridDistribution.from_cdf(mu, cdf)
+    runs_away = top == 0 and not half_line and mu[0] == whole[0]
+    where = int(np.abs(ridge.mu - mu[top]).argmin())
+    return ProfileFit(
+        estimate=-np.inf if runs_away else float(mu[top]),
+        heterogeneity=float(ridge.tau[where]),
+        printing=tuple(float(w) for w in np.exp(ridge.log_omega[where])),
+        mean=mean,
+        new_study=_new_study(mean, ridge, half_line),
+        log_likelihood=float(height[top]),
+    )
+
+
+def _new_study(mean: GridDistribution, ridge: _Ridge, half_line: bool) -> GridDistribution:
+    """θ ~ N(μ, τ̂(μ)²) with μ from its confidence distribution; what escapes keeps escaping."""
+    reach = 4 * float(ridge.tau.max())
+    low = max(ridge.mu[0] - reach, 0.0) if half_line else ridge.mu[0] - reach
+    edges = np.linspace(low, ridge.mu[-1] + reach, 241)
+    tau = np.maximum(np.interp(mean.points, ridge.mu, ridge.tau), 1e-6)
+    cdf = mean.mass @ normal_cdf(edges, mean.points, tau[:, None], half_line=half_line)
+    return GridDistribution.from_cdf(edges, mean.below + cdf)
