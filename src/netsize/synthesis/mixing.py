@@ -1,9 +1,9 @@
 """Averages of curves over a normal distribution of effects: ∫ C(θ) N(θ; μ, τ²) dθ.
 
-Curves come as logarithms on one uniform grid. Two rules share the work. Where τ is wide against
+Curves come as splines of their logarithms. Two rules share the work. Where τ is wide against
 the grid, the trapezoid rule over the grid converges geometrically (the integrand is smooth and dies
-out at both ends). Where τ is narrow, Gauss–Legendre over μ ± 6τ on a cubic spline of the logarithm
-takes over and turns into C(μ) itself as τ → 0. On a half line (θ ≥ 0) the normal is truncated at 0
+out at both ends). Where τ is narrow, Gauss–Legendre over μ ± 6τ takes
+over and turns into C(μ) itself as τ → 0. On a half line (θ ≥ 0) the normal is truncated at 0
 and renormalised.
 """
 
@@ -12,7 +12,7 @@ from __future__ import annotations
 import numpy as np
 from numpy.polynomial.legendre import leggauss
 from numpy.typing import ArrayLike
-from scipy.interpolate import CubicSpline
+from scipy.interpolate import PPoly
 from scipy.special import log_ndtr, ndtr
 
 from netsize.numerics.arrays import Array
@@ -29,13 +29,14 @@ _NODES, _WEIGHTS = leggauss(20)
 _NARROW_LINE, _NARROW_HALF_LINE = 1.5, 3.0
 
 
-def mix(log_curves: Array, theta: Array, mu: Array, tau: Array, *, half_line: bool) -> Array:
-    """log ∫ e^{log_curves} N(θ; μ, τ²) dθ for every curve, τ and μ.
+def mix(curves: PPoly, theta: Array, mu: Array, tau: Array, *, half_line: bool) -> Array:
+    """log ∫ e^{c(θ)} N(θ; μ, τ²) dθ for every curve c, every τ and μ.
 
     Parameters
     ----------
-    log_curves : (m, G) logarithms of curves on the grid. theta : (G,) uniform grid; starts at 0
-        when `half_line`. mu : (M,), inside the grid. tau : (T,), at least 0.
+    curves : m logarithms of curves as one spline, curves(θ) of shape (*θ.shape, m).
+    theta : (G,) uniform grid fine enough for the curves; starts at 0 when `half_line`.
+    mu : (M,), inside the grid. tau : (T,), at least 0.
 
     Returns
     -------
@@ -43,11 +44,10 @@ def mix(log_curves: Array, theta: Array, mu: Array, tau: Array, *, half_line: bo
     """
     step = theta[1] - theta[0]
     narrow = tau < step * (_NARROW_HALF_LINE if half_line else _NARROW_LINE)
-    out = np.empty((log_curves.shape[0], tau.size, mu.size))
-    top = log_curves.max(axis=1, keepdims=True)
-    scaled = np.exp(np.maximum(log_curves - top, LOG_FLOOR))
-    if narrow.any():
-        spline = CubicSpline(theta, log_curves, axis=1)
+    values = curves(theta)  # (G, m)
+    top = values.max(axis=0)
+    values = np.exp(np.maximum(values - top, LOG_FLOOR))
+    averaged = np.empty((tau.size, mu.size, top.size))
     for j, width in enumerate(tau):
         if narrow[j]:
             low = np.maximum(mu - _REACH * width, theta[0])
@@ -56,22 +56,24 @@ def mix(log_curves: Array, theta: Array, mu: Array, tau: Array, *, half_line: bo
             offset = (points - mu[:, None]) / width if width > 0 else np.zeros_like(points)
             weights = np.exp(-0.5 * offset**2) * _WEIGHTS
             weights /= weights.sum(axis=1, keepdims=True)
-            averaged = np.sum(np.exp(spline(points) - top[:, :, None]) * weights, axis=2)
+            averaged[j] = np.einsum("mq,mqi->mi", weights, np.exp(curves(points) - top))
         else:
             weights = np.exp(-0.5 * ((theta - mu[:, None]) / width) ** 2)
             if half_line:
                 # Euler–Maclaurin at 0, where the curves are flat: ½ of the end point, then
                 # + h²/12 of the slope of the normal
                 weights[:, 0] *= 0.5 + step * mu / (12 * width**2)
-            weights /= weights.sum(axis=1, keepdims=True)
-            averaged = scaled @ weights.T
-        with np.errstate(divide="ignore"):
-            out[:, j] = np.maximum(np.log(averaged), LOG_FLOOR) + top
-    return out
+            averaged[j] = (weights @ values) / weights.sum(axis=1, keepdims=True)
+    with np.errstate(divide="ignore"):
+        logs = np.maximum(np.log(averaged), LOG_FLOOR) + top
+    return np.moveaxis(logs, 2, 0)
 
 
 def normal_cdf(x: Array, mu: Array, tau: ArrayLike, *, half_line: bool) -> Array:
-    """P(θ ≤ x) for θ ~ N(μ, τ²), shape (M, X), τ > 0 a number or (M, 1); given θ ≥ 0 on a half line."""
+    """P(θ ≤ x) for θ ~ N(μ, τ²), shape (M, X); given θ ≥ 0 on a half line.
+
+    x : (X,). mu : (M,). tau : above 0, a number or (M, 1).
+    """
     width = np.asarray(tau, dtype=float)
     cdf = np.asarray(ndtr((x - mu[:, None]) / width))
     if not half_line:

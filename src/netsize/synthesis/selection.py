@@ -18,8 +18,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
 import numpy as np
-from numpy.typing import ArrayLike
-from scipy.interpolate import CubicSpline
+from scipy.interpolate import CubicSpline, PPoly
 
 from netsize.effect_sizes import curves
 from netsize.effect_sizes.metrics import Metric
@@ -66,31 +65,28 @@ class Priors:
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Literature:
-    """The curves of one literature on a uniform grid, ready for mixing.
+    """The curves of one literature, ready for mixing.
 
     Attributes
     ----------
-    theta : (G,) grid of effects. half_line : True where θ ≥ 0.
-    log_pieces : (m, G) log-likelihoods; usually one a result, more where an inequality straddles
-        bands. owner, band : (m,) the result and the p-band of each piece.
+    theta : (G,) uniform grid of effects, fine enough for every curve. half_line : θ ≥ 0.
+    curves : one spline of m + U(J-1) logarithms over θ: first the likelihoods of the m pieces,
+        usually one a result, more where an inequality straddles p-bands; then log P_ij of all
+        bands but the last, design by design, for the U different designs.
+    owner, band : (m,) the result and the p-band of each piece.
     weights : (k,) dependence weights c_i.
-    log_bands : (U, J-1, G) log P_ij of all bands but the last, for the U different designs.
     design : (k,) which of the U designs each result has.
+    bands : number J of p-bands.
     """
 
     theta: Array
     half_line: bool
-    log_pieces: Array
+    curves: PPoly
     owner: IntArray
     band: IntArray
     weights: Array
-    log_bands: Array
     design: IntArray
-
-    @property
-    def bands(self) -> int:
-        """Number J of p-bands."""
-        return int(self.log_bands.shape[1]) + 1
+    bands: int
 
 
 def dependence_weights(samples: Sequence[str], *, correlation: float) -> Array:
@@ -130,26 +126,31 @@ def literatures(
     pieces = [[_pieces(e) for e in group] for group in groups]
     flat = [piece for group in pieces for result in group for _, piece in result]
     floor = np.array([LOG_FLOOR if e.low == e.high else _INTERVAL_FLOOR for e in flat])
-    log_pieces = _splined(curves.log_likelihood(flat, support), floor[:, None], support, theta)
+    likelihood = np.maximum(curves.log_likelihood(flat, support), floor[:, None])
     designs = list(dict.fromkeys(_design(e) for group in groups for e in group))
     index = {design: u for u, design in enumerate(designs)}
     chances = curves.band_probabilities(designs, support)[:, :-1]
-    log_bands = _splined(np.log(np.maximum(chances, 1e-300)), _BAND_FLOOR, support, theta)
+    open_bands = chances.shape[1]
+    log_bands = np.maximum(np.log(np.maximum(chances, 1e-300)), _BAND_FLOOR)
+    stack = np.concatenate([likelihood, log_bands.reshape(-1, support.size)])
+    spline = CubicSpline(support, stack.T)
     out = []
     start = 0
     for group, parts, c in zip(groups, pieces, weights, strict=True):
         owner = np.array([i for i, result in enumerate(parts) for _ in result])
         used, design = np.unique([index[_design(e)] for e in group], return_inverse=True)
+        bands_of_used = len(flat) + (used[:, None] * open_bands + np.arange(open_bands)).ravel()
+        rows = np.concatenate([np.arange(start, start + owner.size), bands_of_used])
         out.append(
             Literature(
                 theta=theta,
                 half_line=half_line,
-                log_pieces=log_pieces[start : start + owner.size],
+                curves=PPoly.construct_fast(spline.c[:, :, rows], spline.x),
                 owner=owner,
                 band=np.array([band for result in parts for band, _ in result]),
                 weights=c,
-                log_bands=log_bands[used],
                 design=design,
+                bands=open_bands + 1,
             )
         )
         start += owner.size
@@ -161,45 +162,39 @@ def surface(literature: Literature, *, mu: Array, tau: Array, log_weights: Array
 
     mu : (M,). tau : (T,). log_weights : (W, J) log w_j of each combination, w_0 = 1 included.
     """
-    pieces = mix(literature.log_pieces, literature.theta, mu, tau, half_line=literature.half_line)
-    chances = mixed_bands(literature, mu=mu, tau=tau)
-    return combine(literature, pieces, chances, log_weights)
+    return combine(literature, *mixed(literature, mu=mu, tau=tau), log_weights)
 
 
-def mixed_bands(literature: Literature, *, mu: Array, tau: Array) -> Array:
-    """A_j(μ, τ) of each of the U designs, all J bands, shape (U, J, T, M); they sum to 1."""
-    designs, open_bands, size = literature.log_bands.shape
-    mixed = np.exp(
-        mix(
-            literature.log_bands.reshape(designs * open_bands, size),
-            literature.theta,
-            mu,
-            tau,
-            half_line=literature.half_line,
-        )
-    ).reshape(designs, open_bands, tau.size, mu.size)
-    last = np.maximum(1.0 - mixed.sum(axis=1, keepdims=True), 0.0)
-    return np.concatenate([mixed, last], axis=1)
+def mixed(literature: Literature, *, mu: Array, tau: Array) -> tuple[Array, Array]:
+    """log M of the m pieces, (m, T, M), and A_j of the U designs, (U, J, T, M), summing to 1."""
+    logs = mix(literature.curves, literature.theta, mu, tau, half_line=literature.half_line)
+    size = literature.owner.size
+    open_bands = literature.bands - 1
+    chances = np.exp(logs[size:]).reshape(-1, open_bands, tau.size, mu.size)
+    last = np.maximum(1.0 - chances.sum(axis=1, keepdims=True), 0.0)
+    return logs[:size], np.concatenate([chances, last], axis=1)
 
 
 def combine(literature: Literature, pieces: Array, chances: Array, log_weights: Array) -> Array:
     """Σ_i c_i log[ Σ_pieces w M / Σ_j w_j A_ij ] from mixed pieces and bands; (T, M, W)."""
+    shape = pieces.shape[1:]
+    pieces = pieces.reshape(pieces.shape[0], -1)
+    chances = chances.reshape(*chances.shape[:2], -1)
     counts = np.bincount(literature.owner, minlength=literature.weights.size)
     single = counts[literature.owner] == 1
     c = literature.weights[literature.owner]
-    numerator = np.tensordot(c[single], pieces[single], axes=1)  # (T, M)
-    out = np.empty((*numerator.shape, log_weights.shape[0]))
+    numerator = c[single] @ pieces[single]
     in_band = np.bincount(literature.band[single], weights=c[single], minlength=literature.bands)
     shared = np.bincount(literature.design, weights=literature.weights)
-    split = np.flatnonzero(counts > 1)
+    split = [np.flatnonzero(literature.owner == i) for i in np.flatnonzero(counts > 1)]
+    out = np.empty((numerator.size, log_weights.shape[0]))
     for w, log_w in enumerate(log_weights):
-        printed = np.tensordot(np.exp(log_w), chances, axes=(0, 1))  # (U, T, M)
-        out[:, :, w] = numerator + in_band @ log_w - np.tensordot(shared, np.log(printed), axes=1)
-        for i in split:
-            mine = np.flatnonzero(literature.owner == i)
-            terms = pieces[mine] + log_w[literature.band[mine], None, None]
-            out[:, :, w] += literature.weights[i] * np.logaddexp.reduce(terms, axis=0)
-    return out
+        printed = np.exp(log_w) @ chances
+        out[:, w] = numerator + in_band @ log_w - shared @ np.log(printed)
+        for mine in split:
+            terms = pieces[mine] + log_w[literature.band[mine], None]
+            out[:, w] += c[mine[0]] * np.logaddexp.reduce(terms, axis=0)
+    return out.reshape(*shape, -1)
 
 
 def _centre(e: Evidence) -> float:
@@ -236,7 +231,3 @@ def _pieces(e: Evidence) -> list[tuple[int, Evidence]]:
             if a < b:
                 out.append((j, replace(e, low=a, high=b, two_sided=False, band=j)))
     return out
-
-
-def _splined(values: Array, floor: ArrayLike, support: Array, theta: Array) -> Array:
-    return np.asarray(CubicSpline(support, np.maximum(values, floor), axis=-1)(theta))

@@ -10,6 +10,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import cache
 from itertools import product
 
 import numpy as np
@@ -21,13 +22,13 @@ from netsize.effect_sizes.metrics import Metric
 from netsize.effect_sizes.records import Evidence
 from netsize.numerics.arrays import Array
 from netsize.numerics.grid import GridDistribution
-from netsize.synthesis.mixing import mix, normal_cdf
+from netsize.synthesis.mixing import normal_cdf
 from netsize.synthesis.selection import (
     Literature,
     Priors,
     effect_grid,
     literatures,
-    mixed_bands,
+    mixed,
     surface,
 )
 
@@ -38,7 +39,9 @@ _COARSE = (33, 7, 5)  # points of μ, τ, each ω while the windows are drawn
 _FINE = (65, 12, 9)  # and for the answer, before any refinement
 _ROUNDS = 4
 _LEVELS = (1.0, 1.5, 2.25, 3.5)  # refinements tried until the answer rests
-_CELLS = 240  # cells of the distribution of a new study's effect
+_CELLS = 80  # points, evenly spaced, at which a new study's distribution is summed, and
+_SPREAD = 4  # finer cells splined between them
+_NEGLIGIBLE = 1e-8  # lattice points below this share of the posterior are not summed
 _NULL_NODES = 40
 _WATCHED = (0.05, 0.2, 0.5)  # quantiles that must rest
 
@@ -311,10 +314,15 @@ def _windows(
 
 def _legendre(window: Window, size: int) -> tuple[Array, Array, Array]:
     """Gauss–Legendre nodes, weights and the cell edges that the weights imply."""
-    nodes, weights = leggauss(size)
+    nodes, weights = _rule(size)
     half = (window[1] - window[0]) / 2
     edges = window[0] + half * np.concatenate([[0.0], np.cumsum(weights)])
     return window[0] + half * (nodes + 1), half * weights, edges
+
+
+@cache
+def _rule(size: int) -> tuple[Array, Array]:
+    return leggauss(size)
 
 
 def _combinations(log_omega: Sequence[Array], bands: int) -> Array:
@@ -340,7 +348,7 @@ def _mean(posterior: Posterior) -> GridDistribution:
     """Distribution of μ, its density splined between lattice points."""
     density = posterior.joint.sum(axis=(0, 2))
     density[[0, -1]] *= 2  # undo the trapezoid weights of the ends
-    edges = np.linspace(posterior.mu[0], posterior.mu[-1], _CELLS * 2 + 1)
+    edges = np.linspace(posterior.mu[0], posterior.mu[-1], _CELLS * _SPREAD + 1)
     fine = CubicSpline(posterior.mu, density)((edges[1:] + edges[:-1]) / 2)
     return _along(np.maximum(fine, 0.0), edges)
 
@@ -351,13 +359,16 @@ def _new_study(posterior: Posterior, literature: Literature) -> GridDistribution
     widest = posterior.tau[np.flatnonzero(share.sum(axis=1) > 1e-6)[-1]]
     low = max(float(posterior.mu[0] - 4 * widest), float(literature.theta[0]))
     high = min(float(posterior.mu[-1] + 4 * widest), float(literature.theta[-1]))
-    edges = np.linspace(low, high, _CELLS + 1)
-    cdf = np.zeros(edges.size)
+    points = np.linspace(low, high, _CELLS + 1)
+    cdf = np.zeros(points.size)
     for tau, part in zip(posterior.tau, share, strict=True):
-        if part.sum() > 1e-8:
-            cdf += part @ normal_cdf(edges, posterior.mu, tau, half_line=literature.half_line)
+        felt = part > _NEGLIGIBLE
+        if felt.any():
+            half_line = literature.half_line
+            cdf += part[felt] @ normal_cdf(points, posterior.mu[felt], tau, half_line=half_line)
     cdf = (cdf - cdf[0]) / (cdf[-1] - cdf[0])
-    return GridDistribution.from_cdf(edges, cdf)
+    edges = np.linspace(low, high, _CELLS * _SPREAD + 1)
+    return GridDistribution.from_cdf(edges, CubicSpline(points, cdf)(edges))
 
 
 def _printing(posterior: Posterior) -> tuple[GridDistribution, ...]:
@@ -377,7 +388,7 @@ def _negligible(posterior: Posterior, priors: Priors) -> float:
 
 def _unprinted(posterior: Posterior, literature: Literature) -> GridDistribution:
     """1 - k/Σ_i 1/Π_i with Π_i = Σ_j w_j A_ij: a printed result stands for 1/Π_i conducted ones."""
-    chances = mixed_bands(literature, mu=posterior.mu, tau=posterior.tau)
+    _, chances = mixed(literature, mu=posterior.mu, tau=posterior.tau)
     per_design = np.bincount(literature.design, minlength=chances.shape[0]).astype(float)
     conducted = np.empty_like(posterior.joint)
     for w, log_w in enumerate(posterior.log_weights):
@@ -395,22 +406,17 @@ def _shrunken(
     """Density of θ_i ∝ L_i(θ) Σ [P(μ,τ)/M_i(μ,τ)] N(θ; μ, τ²), on the cells of the new study's."""
     share = posterior.joint.sum(axis=2)
     points = (edges[1:] + edges[:-1]) / 2
-    log_own = np.array([np.interp(points, literature.theta, row) for row in literature.log_pieces])
-    mixed = mix(
-        literature.log_pieces,
-        literature.theta,
-        posterior.mu,
-        posterior.tau,
-        half_line=literature.half_line,
-    )
-    top = literature.log_pieces.max(axis=1)
-    density = np.zeros((literature.owner.size, points.size))
+    size = literature.owner.size
+    log_own = literature.curves(points).T[:size]
+    top = log_own.max(axis=1, keepdims=True)
+    log_mixed, _ = mixed(literature, mu=posterior.mu, tau=posterior.tau)
+    density = np.zeros((size, points.size))
     for t, tau in enumerate(posterior.tau):
         cells = np.diff(
             normal_cdf(edges, posterior.mu, tau, half_line=literature.half_line), axis=1
         )
-        density += (share[t] / np.exp(mixed[:, t] - top[:, None])) @ cells
-    density *= np.exp(log_own - top[:, None])
+        density += (share[t] / np.exp(log_mixed[:, t] - top)) @ cells
+    density *= np.exp(log_own - top)
     counts = np.bincount(literature.owner, minlength=literature.weights.size)
     where = {int(owner): row for row, owner in enumerate(literature.owner)}
     return tuple(
