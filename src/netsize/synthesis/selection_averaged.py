@@ -76,7 +76,7 @@ class AveragedFit:
     mean : of μ given that there is an effect. new_study : of θ ~ N(μ, τ²) for the new study, given
         an effect. heterogeneity : of τ. printing : of each ω_j, given an effect.
     probability_negligible : posterior probability of μ = τ = 0.
-    bayes_factor_effect : evidence for an effect against none.
+    log_bayes_factor : natural logarithm of the evidence for an effect over that for none.
     unprinted : of the share of conducted results that never got printed, given an effect.
     shrunken : for each result the distribution of its own true effect; None where an inequality
         straddles p-bands.
@@ -90,7 +90,7 @@ class AveragedFit:
     heterogeneity: GridDistribution
     printing: tuple[GridDistribution, ...]
     probability_negligible: float
-    bayes_factor_effect: float
+    log_bayes_factor: float
     unprinted: GridDistribution
     shrunken: tuple[GridDistribution | None, ...]
     error: float
@@ -131,7 +131,7 @@ def fit_averaged(
         heterogeneity=_along(posterior.joint.sum(axis=(1, 2)), posterior.tau_edges),
         printing=_printing(posterior),
         probability_negligible=_negligible(posterior, priors),
-        bayes_factor_effect=float(np.exp(posterior.log_evidence - posterior.log_null)),
+        log_bayes_factor=posterior.log_evidence - posterior.log_null,
         unprinted=_unprinted(posterior, literature),
         shrunken=_shrunken(posterior, literature, new.edges),
         error=error,
