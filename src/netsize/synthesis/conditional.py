@@ -1,0 +1,257 @@
+"""Estimates from the significant results alone, conditional on their being significant; exact.
+
+If only significant results get printed, what they say is the distribution of the statistic X beyond
+its critical value c, with one common effect θ:
+
+    log L(θ) = Σ_i c_i [log f_i(x_i; θ) - log P_i(X beyond c_i; θ)]      (Hedges 1984),
+    q_i(θ) = P(X > x_i; θ) / P(X > c_i; θ), uniform at the true θ  (Simonsohn et al. 2014;
+                                                                    van Assen et al. 2015).
+
+"Beyond" means X > c for significance in the predicted direction, |X| > c for either direction.
+
+Just above the cut the first likelihood has its maximum at a large effect of the wrong sign, or none
+at all (z = 2.0 against 1.96 gives -23). Such a maximum is a statement about the shape of a far tail
+and no estimate; it is reported as 0, at a boundary, as van Assen et al. (2015) do, while the
+interval keeps whatever lower end the likelihood gives, -inf included. Selection in either direction
+has its maximum near 0 there.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass, replace
+from typing import Literal, TypeAlias
+
+import numpy as np
+from scipy.special import chdtri, comb, gammaln, ndtr
+
+from netsize.effect_sizes import curves
+from netsize.effect_sizes.records import Evidence
+from netsize.numerics.arrays import Array
+from netsize.numerics.grid import GridDistribution
+from netsize.synthesis.confidence import unusable
+from netsize.synthesis.records import Estimate
+
+__all__ = [
+    "Domain",
+    "Sides",
+    "conditional_likelihood",
+    "conditional_quantiles",
+    "irwin_hall",
+    "likelihood_maximum",
+    "search_domain",
+    "tail_shares",
+]
+
+Sides: TypeAlias = Literal["predicted", "either"]
+
+# Beyond 5 standard errors against the direction the chance of significance is below 1e-12 and the
+# library's noncentral tails lose their relative accuracy.
+_AGAINST = 5.0
+_BEYOND = 8.0
+_POINTS = 401
+_EXACT_SUM = 16  # terms up to which the Irwin-Hall sum keeps ten digits
+
+
+@dataclass(frozen=True, slots=True)
+class Domain:
+    """Effects searched, on the metric."""
+
+    low: float
+    high: float
+
+
+def search_domain(estimates: Array, null_variances: Array, *, signed: bool) -> Domain:
+    """From 5 of the smallest standard errors below 0 (from 0 without a sign) to 8 beyond all."""
+    se = np.sqrt(null_variances)
+    low = -_AGAINST * float(se.min()) if signed else 0.0
+    return Domain(low, float((estimates + _BEYOND * se).max()))
+
+
+def likelihood_maximum(
+    evidence: Sequence[Evidence], shares: Array, domain: Domain, *, sides: Sides
+) -> tuple[float, float]:
+    """The θ in the domain with the highest conditional likelihood, and log L there."""
+
+    def function(theta: Array) -> Array:
+        return _log_likelihood(evidence, shares, theta, sides)
+
+    low, high = domain.low, domain.high
+    theta, value = np.array([low]), np.array([0.0])
+    while high - low > 1e-9 * (domain.high - domain.low):
+        theta = np.linspace(low, high, _POINTS)
+        value = function(theta)
+        best = int(np.nanargmax(value))
+        low, high = theta[max(best - 1, 0)], theta[min(best + 1, _POINTS - 1)]
+    best = int(np.nanargmax(value))
+    return float(theta[best]), float(value[best])
+
+
+def conditional_likelihood(
+    evidence: Sequence[Evidence],
+    shares: Array,
+    domain: Domain,
+    *,
+    sides: Sides,
+    level: float = 0.95,
+) -> Estimate:
+    """Maximum of the conditional likelihood with its likelihood-ratio interval.
+
+    Parameters
+    ----------
+    evidence : exact results beyond their first cut, all of them. shares : c_i, shape (k,).
+    domain : effects searched. sides : which results selection lets through.
+    """
+    key = "conditional-likelihood" if sides == "predicted" else "conditional-either-sign"
+    label = "Conditional likelihood" + ("" if sides == "predicted" else ", either sign printed")
+    used = len(evidence)
+    if used == 0:
+        return unusable(key, label, level=level, used=0, reason="no exact significant result")
+    top, highest = likelihood_maximum(evidence, shares, domain, sides=sides)
+    theta = np.unique(np.append(np.linspace(domain.low, domain.high, 4 * _POINTS), top))
+    drop = 2 * np.maximum(highest - _log_likelihood(evidence, shares, theta, sides), 0.0)
+    root = np.sign(theta - top) * np.sqrt(drop)
+    limit = float(np.sqrt(chdtri(1, 1 - level)))
+    low, high = _crossing(theta, root, -limit), _crossing(theta, root, limit)
+    distribution = GridDistribution.from_cdf(theta, ndtr(root))
+    if top > 0:
+        curvature = _curvature(
+            lambda x: _log_likelihood(evidence, shares, x, sides), top, (domain.high - top) / 2000
+        )
+        se = float(1 / np.sqrt(curvature))
+        return Estimate(
+            key=key, label=label, estimate=top, se=se, low=low, high=high, level=level, used=used,
+            reason=_few(used), distribution=distribution,
+        )  # fmt: skip
+    return _at_zero(key, label, low, high, level, used, distribution)
+
+
+def conditional_quantiles(
+    evidence: Sequence[Evidence], domain: Domain, *, level: float = 0.95
+) -> Estimate:
+    """The θ at which the conditional tail shares q_i have their expected sum k/2.
+
+    Their sum is Irwin-Hall at the true effect, which gives an exact interval and, for one result,
+    the median-unbiased estimate.
+    """
+    key, label, used = "conditional-quantiles", "Uniform conditional p-values", len(evidence)
+    if used == 0:
+        return unusable(key, label, level=level, used=0, reason="no exact significant result")
+    theta = np.linspace(domain.low, domain.high, 4 * _POINTS)
+    cdf = np.maximum.accumulate(irwin_hall(tail_shares(evidence, theta).sum(axis=0), terms=used))
+    tail = (1 - level) / 2
+
+    def at(probability: float) -> float:
+        return _refined(
+            lambda x: irwin_hall(tail_shares(evidence, x).sum(axis=0), terms=used) - probability,
+            theta,
+            cdf - probability,
+        )
+
+    low, middle, high = at(tail), at(0.5), at(1 - tail)
+    distribution = GridDistribution.from_cdf(theta, cdf)
+    if middle > 0:
+        return Estimate(
+            key=key, label=label, estimate=middle, low=low, high=high, level=level, used=used,
+            reason=_few(used), distribution=distribution,
+        )  # fmt: skip
+    return _at_zero(key, label, low, high, level, used, distribution)
+
+
+def tail_shares(evidence: Sequence[Evidence], theta: Array) -> Array:
+    """q_i(θ), shape (k, G): how much of the significant tail lies beyond the observed value."""
+    beyond = curves.band_probabilities([_cut_at(e, (e.low,)) for e in evidence], theta)[:, 0]
+    significant = curves.band_probabilities([_cut_at(e, e.cuts[:1]) for e in evidence], theta)[:, 0]
+    with np.errstate(all="ignore"):
+        return np.clip(np.nan_to_num(beyond / significant), 0.0, 1.0)
+
+
+def irwin_hall(total: Array, *, terms: int) -> Array:
+    """P(U₁ + ... + U_k ≤ total) for k uniform variables; normal beyond 16 of them."""
+    total = np.asarray(total, dtype=float)
+    if terms > _EXACT_SUM:
+        return np.asarray(ndtr((total - terms / 2) / np.sqrt(terms / 12)))
+    lower = np.minimum(total, terms - total)  # the sum is symmetric; the short side loses no digits
+    j = np.arange(terms + 1)[:, None]
+    pieces = (-1.0) ** j * comb(terms, j) * np.maximum(lower.ravel() - j, 0.0) ** terms
+    tail = (pieces.sum(axis=0) * np.exp(-gammaln(terms + 1))).reshape(total.shape)
+    return np.where(total <= terms / 2, tail, 1 - tail)
+
+
+def _log_likelihood(
+    evidence: Sequence[Evidence], shares: Array, theta: Array, sides: Sides
+) -> Array:
+    printed = _significant(evidence, theta, sides)
+    with np.errstate(divide="ignore"):
+        log_printed = np.log(printed)
+    value: Array = shares @ (curves.log_likelihood(evidence, theta) - log_printed)
+    return np.where(np.isfinite(value), value, -np.inf)
+
+
+def _significant(evidence: Sequence[Evidence], theta: Array, sides: Sides) -> Array:
+    """P(X > c), or P(|X| > c) for either sign, shape (k, G)."""
+    if sides == "predicted":
+        bands = curves.band_probabilities([_cut_at(e, e.cuts[:1]) for e in evidence], theta)
+        return np.asarray(bands[:, 0])
+    both = [_cut_at(e, (e.cuts[0], -e.cuts[0])) for e in evidence]
+    bands = curves.band_probabilities(both, theta)
+    return np.asarray(bands[:, 0] + bands[:, 2])
+
+
+def _cut_at(e: Evidence, cuts: tuple[float, ...]) -> Evidence:
+    return replace(e, cuts=cuts, band=None)
+
+
+def _crossing(theta: Array, root: Array, target: float) -> float:
+    """Where an increasing root reaches the target; ±inf where the domain ends before."""
+    if root[0] > target:
+        return -np.inf
+    if root[-1] < target:
+        return np.inf
+    return float(np.interp(target, np.maximum.accumulate(root), theta))
+
+
+def _refined(function: Callable[[Array], Array], theta: Array, value: Array) -> float:
+    """Zero of an increasing function tabulated on a grid, by finer grids; ±inf outside."""
+    if value[0] > 0:
+        return -np.inf
+    if value[-1] < 0:
+        return np.inf
+    for _ in range(3):
+        place = int(np.clip(np.searchsorted(value, 0.0), 1, theta.size - 1))
+        theta = np.linspace(theta[place - 1], theta[place], 51)
+        value = function(theta)
+    return float(np.interp(0.0, value, theta))
+
+
+def _curvature(function: Callable[[Array], Array], at: float, step: float) -> float:
+    below, middle, above = function(np.array([at - step, at, at + step]))
+    return float((2 * middle - below - above) / step**2)
+
+
+def _few(used: int) -> str:
+    return "one result: its own uncertainty is all there is" if used == 1 else ""
+
+
+def _at_zero(
+    key: str,
+    label: str,
+    low: float,
+    high: float,
+    level: float,
+    used: int,
+    distribution: GridDistribution,
+) -> Estimate:
+    return Estimate(
+        key=key,
+        label=label,
+        estimate=0.0,
+        low=low,
+        high=max(high, 0.0),
+        level=level,
+        used=used,
+        status="at a boundary",
+        reason="so close to the significance threshold, the results fit an effect of 0 or against "
+        "the prediction best; shown as 0",
+        distribution=distribution,
+    )
