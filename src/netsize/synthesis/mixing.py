@@ -19,8 +19,9 @@ from netsize.numerics.arrays import Array
 
 __all__ = ["LOG_FLOOR", "mix", "normal_cdf"]
 
-# e^-690 is the smallest likelihood kept; what underflows below it is the same "impossible".
-LOG_FLOOR = -690.0
+# Relative likelihoods and normal weights below e^-300 are levelled there: "impossible" either way,
+# and their products stay clear of the subnormal numbers, on which processors are slow.
+LOG_FLOOR = -300.0
 
 _REACH = 6.0  # standard deviations of N(μ, τ²) covered by the narrow rule
 _NODES, _WEIGHTS = leggauss(20)
@@ -56,17 +57,17 @@ def mix(curves: PPoly, theta: Array, mu: Array, tau: Array, *, half_line: bool) 
             offset = (points - mu[:, None]) / width if width > 0 else np.zeros_like(points)
             weights = np.exp(-0.5 * offset**2) * _WEIGHTS
             weights /= weights.sum(axis=1, keepdims=True)
-            averaged[j] = np.einsum("mq,mqi->mi", weights, np.exp(curves(points) - top))
+            inside = np.exp(np.maximum(curves(points) - top, LOG_FLOOR))  # (M, nodes, m)
+            averaged[j] = (weights[:, None, :] @ inside)[:, 0]
         else:
-            weights = np.exp(-0.5 * ((theta - mu[:, None]) / width) ** 2)
+            offset = (theta - mu[:, None]) / width
+            weights = np.exp(np.maximum(-0.5 * offset**2, LOG_FLOOR))
             if half_line:
                 # Euler–Maclaurin at 0, where the curves are flat: ½ of the end point, then
                 # + h²/12 of the slope of the normal
                 weights[:, 0] *= 0.5 + step * mu / (12 * width**2)
             averaged[j] = (weights @ values) / weights.sum(axis=1, keepdims=True)
-    with np.errstate(divide="ignore"):
-        logs = np.maximum(np.log(averaged), LOG_FLOOR) + top
-    return np.moveaxis(logs, 2, 0)
+    return np.moveaxis(np.log(averaged) + top, 2, 0)
 
 
 def normal_cdf(x: Array, mu: Array, tau: ArrayLike, *, half_line: bool) -> Array:
