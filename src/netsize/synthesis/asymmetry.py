@@ -10,7 +10,7 @@ from scipy.special import ndtr, stdtr
 
 from netsize.numerics.arrays import Array
 from netsize.synthesis.padding import guarded
-from netsize.synthesis.records import Diagnostic
+from netsize.synthesis.records import Diagnostic, number_of_results
 from netsize.synthesis.small_study import precision_line
 
 __all__ = [
@@ -61,9 +61,10 @@ def rank_test_many(
 ) -> RankTest:
     """Rank test of asymmetry (Begg & Mazumdar 1994), ties included.
 
-    Kendall's tau-b of (y - m)/√(v - 1/W) with v, m the common-effect mean and W = Σ1/v. Without
-    ties and with at most 33 results p comes from the exact permutation law, otherwise from the
-    normal with the variance corrected for ties (Kendall 1970, ch. 4).
+    Kendall's tau-b of (y - m)/√(v - 1/W) with v, m the common-effect mean and W = Σ1/v.
+    Effect-free variances avoid the correlation of an estimate with its own variance. Without ties
+    and with at most 33 results p comes from the exact permutation law, otherwise from the normal
+    with the variance corrected for ties (Kendall 1970, ch. 4).
     """
     y, v, present, k = guarded(estimates, variances, mask)
     with np.errstate(all="ignore"):
@@ -118,10 +119,10 @@ def regression_test(estimates: ArrayLike, null_variances: ArrayLike) -> Diagnost
     )
 
 
-def rank_test(estimates: ArrayLike, variances: ArrayLike) -> Diagnostic:
+def rank_test(estimates: ArrayLike, null_variances: ArrayLike) -> Diagnostic:
     """The rank test as one record."""
     key, label, used = "rank-asymmetry", "Rank test of asymmetry", np.size(estimates)
-    fit = rank_test_many(estimates, variances)
+    fit = rank_test_many(estimates, null_variances)
     if used < 3 or not np.isfinite(fit.tau):
         return Diagnostic(
             key=key,
@@ -157,8 +158,8 @@ def _limits(used: int) -> str:
     """From the published operating characteristics (Sterne, Gavaghan & Egger 2000, 2011)."""
     if used < 10:
         return (
-            f"With {used} results, fewer than the ten usually asked for, it misses strong "
-            "selection more often than not; no trend is no all-clear."
+            f"With {number_of_results(used)}, fewer than the ten usually asked for, it misses "
+            "strong selection more often than not; no trend is no all-clear."
         )
     if used < 20:
         return (

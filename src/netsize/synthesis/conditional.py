@@ -49,7 +49,7 @@ Sides: TypeAlias = Literal["predicted", "either"]
 # library's noncentral tails lose their relative accuracy.
 _AGAINST = 5.0
 _BEYOND = 8.0
-_POINTS = 401
+_POINTS = 161
 _EXACT_SUM = 16  # terms up to which the Irwin-Hall sum keeps ten digits
 
 
@@ -61,11 +61,20 @@ class Domain:
     high: float
 
 
-def search_domain(estimates: Array, null_variances: Array, *, signed: bool) -> Domain:
-    """From 5 of the smallest standard errors below 0 (from 0 without a sign) to 8 beyond all."""
+def search_domain(
+    estimates: Array, null_variances: Array, *, signed: bool, sides: Sides = "predicted"
+) -> Domain:
+    """From 5 of the smallest standard errors below 0 to 8 beyond all results.
+
+    Where either sign is printed both ends lie 8 beyond all; without a sign effects start at 0.
+    """
     se = np.sqrt(null_variances)
-    low = -_AGAINST * float(se.min()) if signed else 0.0
-    return Domain(low, float((estimates + _BEYOND * se).max()))
+    high = float((estimates + _BEYOND * se).max())
+    if not signed:
+        return Domain(0.0, high)
+    if sides == "either":
+        return Domain(float((estimates - _BEYOND * se).min()), high)
+    return Domain(-_AGAINST * float(se.min()), high)
 
 
 def likelihood_maximum(
@@ -108,20 +117,27 @@ def conditional_likelihood(
     if used == 0:
         return unusable(key, label, level=level, used=0, reason="no exact significant result")
     top, highest = likelihood_maximum(evidence, shares, domain, sides=sides)
-    theta = np.unique(np.append(np.linspace(domain.low, domain.high, 4 * _POINTS), top))
-    drop = 2 * np.maximum(highest - _log_likelihood(evidence, shares, theta, sides), 0.0)
-    root = np.sign(theta - top) * np.sqrt(drop)
+    theta = np.unique(np.append(np.linspace(domain.low, domain.high, 5 * _POINTS), top))
+
+    def signed_root(theta: Array) -> Array:
+        drop = 2 * np.maximum(highest - _log_likelihood(evidence, shares, theta, sides), 0.0)
+        return np.asarray(np.sign(theta - top) * np.sqrt(drop))
+
+    root = np.maximum.accumulate(signed_root(theta))
     limit = float(np.sqrt(chdtri(1, 1 - level)))
-    low, high = _crossing(theta, root, -limit), _crossing(theta, root, limit)
+    low = _refined(lambda x: signed_root(x) + limit, theta, root + limit)
+    high = _refined(lambda x: signed_root(x) - limit, theta, root - limit)
     distribution = GridDistribution.from_cdf(theta, ndtr(root))
-    if top > 0:
+    if top > 0 or sides == "either":
         curvature = _curvature(
-            lambda x: _log_likelihood(evidence, shares, x, sides), top, (domain.high - top) / 2000
+            lambda x: _log_likelihood(evidence, shares, x, sides),
+            top,
+            (domain.high - domain.low) / 4000,
         )
         se = float(1 / np.sqrt(curvature))
         return Estimate(
             key=key, label=label, estimate=top, se=se, low=low, high=high, level=level, used=used,
-            reason=_few(used), distribution=distribution,
+            reason=_caveat(used), distribution=distribution,
         )  # fmt: skip
     return _at_zero(key, label, low, high, level, used, distribution)
 
@@ -137,7 +153,7 @@ def conditional_quantiles(
     key, label, used = "conditional-quantiles", "Uniform conditional p-values", len(evidence)
     if used == 0:
         return unusable(key, label, level=level, used=0, reason="no exact significant result")
-    theta = np.linspace(domain.low, domain.high, 4 * _POINTS)
+    theta = np.linspace(domain.low, domain.high, 5 * _POINTS)
     cdf = np.maximum.accumulate(irwin_hall(tail_shares(evidence, theta).sum(axis=0), terms=used))
     tail = (1 - level) / 2
 
@@ -153,7 +169,7 @@ def conditional_quantiles(
     if middle > 0:
         return Estimate(
             key=key, label=label, estimate=middle, low=low, high=high, level=level, used=used,
-            reason=_few(used), distribution=distribution,
+            reason=_caveat(used), distribution=distribution,
         )  # fmt: skip
     return _at_zero(key, label, low, high, level, used, distribution)
 
@@ -175,7 +191,7 @@ def irwin_hall(total: Array, *, terms: int) -> Array:
     j = np.arange(terms + 1)[:, None]
     pieces = (-1.0) ** j * comb(terms, j) * np.maximum(lower.ravel() - j, 0.0) ** terms
     tail = (pieces.sum(axis=0) * np.exp(-gammaln(terms + 1))).reshape(total.shape)
-    return np.where(total <= terms / 2, tail, 1 - tail)
+    return np.asarray(np.where(total <= terms / 2, tail, 1 - tail))
 
 
 def _log_likelihood(
@@ -184,7 +200,7 @@ def _log_likelihood(
     printed = _significant(evidence, theta, sides)
     with np.errstate(divide="ignore"):
         log_printed = np.log(printed)
-    value: Array = shares @ (curves.log_likelihood(evidence, theta) - log_printed)
+    value = np.asarray(shares @ (curves.log_likelihood(evidence, theta) - log_printed))
     return np.where(np.isfinite(value), value, -np.inf)
 
 
@@ -200,15 +216,6 @@ def _significant(evidence: Sequence[Evidence], theta: Array, sides: Sides) -> Ar
 
 def _cut_at(e: Evidence, cuts: tuple[float, ...]) -> Evidence:
     return replace(e, cuts=cuts, band=None)
-
-
-def _crossing(theta: Array, root: Array, target: float) -> float:
-    """Where an increasing root reaches the target; ±inf where the domain ends before."""
-    if root[0] > target:
-        return -np.inf
-    if root[-1] < target:
-        return np.inf
-    return float(np.interp(target, np.maximum.accumulate(root), theta))
 
 
 def _refined(function: Callable[[Array], Array], theta: Array, value: Array) -> float:
@@ -229,8 +236,8 @@ def _curvature(function: Callable[[Array], Array], at: float, step: float) -> fl
     return float((2 * middle - below - above) / step**2)
 
 
-def _few(used: int) -> str:
-    return "one result: its own uncertainty is all there is" if used == 1 else ""
+def _caveat(used: int) -> str:
+    return "one result" if used == 1 else "takes all results to share one effect"
 
 
 def _at_zero(

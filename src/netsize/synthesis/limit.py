@@ -17,7 +17,7 @@ from netsize.synthesis.confidence import symmetric, unusable
 from netsize.synthesis.heterogeneity import Heterogeneity, tau_squared
 from netsize.synthesis.lines import weighted_line
 from netsize.synthesis.padding import guarded
-from netsize.synthesis.records import Estimate
+from netsize.synthesis.records import Estimate, number_of_results
 from netsize.synthesis.small_study import FEW
 
 __all__ = ["Limit", "limit", "limit_many"]
@@ -37,16 +37,23 @@ def limit_many(
     variances: ArrayLike,
     mask: ArrayLike | None = None,
     *,
+    null_variances: ArrayLike | None = None,
     heterogeneity: Heterogeneity = "restricted-likelihood",
 ) -> Limit:
     """Fit α and β by maximum likelihood at the τ² of the model without α.
 
     The line in √(v+τ²) has known weights 1/(v+τ²); its covariance is not rescaled. nan where k < 3
     or all results are equally precise.
+
+    Notes
+    -----
+    `null_variances` (v by default, as published) replace v in the line: where v contains the
+    estimate, the line would find a slope that selection has not made.
     """
     y, v, present, _ = guarded(estimates, variances, mask)
     tau2 = tau_squared(y, v, present > 0, method=heterogeneity).value
-    total = v + np.nan_to_num(tau2)[..., None]
+    null = v if null_variances is None else guarded(estimates, null_variances, mask).variances
+    total = null + np.nan_to_num(tau2)[..., None]
     line = weighted_line(np.sqrt(total), y, present / total)
     tau = np.sqrt(tau2)
     variance = line.intercept_unit + 2 * tau * line.covariance_unit + tau2 * line.slope_unit
@@ -57,6 +64,7 @@ def limit(
     estimates: ArrayLike,
     variances: ArrayLike,
     *,
+    null_variances: ArrayLike | None = None,
     heterogeneity: Heterogeneity = "restricted-likelihood",
     level: float = 0.95,
 ) -> Estimate:
@@ -66,7 +74,9 @@ def limit(
         return unusable(
             key, label, level=level, used=used, reason="a line needs at least three results"
         )
-    fit = limit_many(estimates, variances, heterogeneity=heterogeneity)
+    fit = limit_many(
+        estimates, variances, null_variances=null_variances, heterogeneity=heterogeneity
+    )
     if not np.isfinite(fit.estimate):
         return unusable(
             key,
@@ -84,5 +94,5 @@ def limit(
         level=level,
         used=used,
         tau2=float(fit.tau2),
-        reason=f"unreliable with {used} results" if used < FEW else "",
+        reason=f"unreliable with {number_of_results(used)}" if used < FEW else "",
     )

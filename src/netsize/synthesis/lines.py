@@ -14,7 +14,8 @@ __all__ = ["Line", "squared_residuals", "weighted_line"]
 class Line(NamedTuple):
     """y = intercept + slope · x by weighted least squares, shape (...).
 
-    intercept_se, slope_se : with the residual variance estimated on df = k - 2.
+    intercept_se, slope_se : with the residual variance `scale` estimated on df = k - 2; 1 is
+        expected of `scale` where the weights are inverse variances.
     intercept_unit, slope_unit, covariance_unit : entries of (X'WX)⁻¹, for weights that are known
         inverse variances.
     All nan where k < 3 or every x is the same.
@@ -25,6 +26,7 @@ class Line(NamedTuple):
     intercept_se: Array
     slope_se: Array
     df: Array
+    scale: Array
     intercept_unit: Array
     slope_unit: Array
     covariance_unit: Array
@@ -54,6 +56,7 @@ def weighted_line(x: Array, y: Array, weights: Array) -> Line:
             np.sqrt(scale * intercept_unit),
             np.sqrt(scale / sxx),
             df,
+            scale,
             intercept_unit,
             1 / sxx,
             -x_mean / sxx,

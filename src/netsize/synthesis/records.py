@@ -8,9 +8,11 @@ from typing import Any, Literal, TypeAlias
 
 from netsize.numerics.grid import GridDistribution
 
-__all__ = ["Diagnostic", "Estimate", "Status", "plain"]
+__all__ = ["Diagnostic", "Estimate", "Status", "number_of_results", "plain"]
 
-Status: TypeAlias = Literal["fine", "at a boundary", "too few results", "did not converge"]
+Status: TypeAlias = Literal[
+    "fine", "at a boundary", "too few results", "did not converge", "does not apply"
+]
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -103,3 +105,10 @@ class Diagnostic:
 def plain(value: float | None) -> float | None:
     """The number for JSON: None for a missing, infinite or undefined one."""
     return float(value) if value is not None and math.isfinite(value) else None
+
+
+def number_of_results(number: int, kind: str = "") -> str:
+    """In words: "1 result", "5 significant results", "no result"."""
+    amount = "no" if number == 0 else str(number)
+    noun = "result" if number <= 1 else "results"
+    return " ".join(part for part in (amount, kind, noun) if part)

@@ -12,7 +12,7 @@ from netsize.effect_sizes import curves
 from netsize.effect_sizes.records import Evidence
 from netsize.numerics.arrays import Array
 from netsize.synthesis.conditional import Domain, tail_shares
-from netsize.synthesis.records import Diagnostic
+from netsize.synthesis.records import Diagnostic, number_of_results
 
 __all__ = [
     "effects_for_power",
@@ -50,8 +50,8 @@ def excess_significance(evidence: Sequence[Evidence], effect: float) -> Diagnost
     exact = [e for e in evidence if e.low == e.high]
     key, label, used = "excess-significance", "Excess of significant results", len(exact)
     limits = (
-        f"With {used} results it has little power; it takes the mean, itself inflated by "
-        "selection, as the truth, so it errs towards silence."
+        f"With {number_of_results(used)} it has little power; it takes the mean, itself inflated "
+        "by selection, as the truth, so it errs towards silence."
         if used < 20
         else "It takes the mean, itself inflated by selection, as the truth, so it errs towards "
         "silence; heterogeneity can make an excess too."
@@ -157,8 +157,8 @@ def _fisher(shares: Array) -> tuple[float, float]:
 def _shape_limits(used: int) -> str:
     if used < 5:
         return (
-            f"With {used} significant {'result' if used == 1 else 'results'} only overwhelming "
-            "evidence shows; it says nothing about how many results went unprinted."
+            f"With {number_of_results(used, 'significant')} only overwhelming evidence shows; it "
+            "says nothing about how many results went unprinted."
         )
     return (
         "It asks whether the significant results hold any effect, not how large it is, and is "

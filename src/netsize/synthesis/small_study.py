@@ -16,13 +16,14 @@ from numpy.typing import ArrayLike
 from scipy.special import stdtr
 
 from netsize.numerics.arrays import Array, BoolArray
-from netsize.synthesis.confidence import symmetric, unusable
+from netsize.synthesis.confidence import AGREE_BY_LUCK, symmetric, unusable
 from netsize.synthesis.lines import Line, weighted_line
 from netsize.synthesis.padding import guarded
-from netsize.synthesis.records import Estimate
+from netsize.synthesis.records import Estimate, number_of_results
 
 __all__ = [
     "FEW",
+    "RULE_LEVEL",
     "PrecisionEffect",
     "peese",
     "pet",
@@ -31,7 +32,7 @@ __all__ = [
     "precision_line",
 ]
 
-_RULE_LEVEL = 0.05
+RULE_LEVEL = 0.05
 # Regressions on precision are published with simulations from ten results up (Stanley 2017 warns
 # of fewer); below, every row says so.
 FEW = 10
@@ -69,7 +70,7 @@ def pet_peese_many(
     with np.errstate(all="ignore"):
         t = first.intercept / first.intercept_se
         p = np.where(np.isnan(t), np.nan, stdtr(first.df, -t))
-    uses_peese = p < _RULE_LEVEL
+    uses_peese = p < RULE_LEVEL
     return PrecisionEffect(
         first,
         second,
@@ -116,8 +117,10 @@ def _row(key: str, label: str, line: Line, used: int, level: float, reason: str)
             used=used,
             reason="all results are equally precise, so there is no trend to fit",
         )
+    if 0 < line.scale < 1:
+        reason += "; " + AGREE_BY_LUCK
     if used < FEW:
-        reason += f"; unreliable with {used} results"
+        reason += f"; unreliable with {number_of_results(used)}"
     return symmetric(
         key,
         label,

@@ -21,11 +21,11 @@ from netsize.errors import SettingError
 from netsize.numerics.arrays import Array, IntArray
 from netsize.synthesis.confidence import symmetric, unusable
 from netsize.synthesis.heterogeneity import tau_squared
-from netsize.synthesis.records import Estimate
+from netsize.synthesis.records import Diagnostic, Estimate, number_of_results
 
-__all__ = ["StepFit", "check_cuts", "fit_step_function", "step_function"]
+__all__ = ["StepFit", "check_cuts", "fit_step_function", "selection_test", "step_function"]
 
-_REACH = 10.0  # how far beyond the estimates μ is searched, in their largest spread
+_REACH = 3.0  # how far beyond the estimates μ is searched, in their range
 _LOG_WEIGHT = 12.0  # weights are searched within e^±12
 
 
@@ -106,7 +106,7 @@ def check_cuts(cuts: Sequence[float]) -> tuple[float, ...]:
     ordered = tuple(sorted(float(c) for c in cuts))
     if not ordered or len(set(ordered)) < len(ordered) or not all(0 < c < 1 for c in ordered):
         raise SettingError(
-            "cuts", f"{list(cuts)} are not distinct one-sided p-values in (0, 1); try 0.025"
+            "steps", f"{list(cuts)} are not distinct one-sided p-values in (0, 1); try 0.025"
         )
     return ordered
 
@@ -186,7 +186,7 @@ def step_function(
     if fit.runaway:
         return unusable(
             key, label, level=level, used=used, status="did not converge",
-            reason="the likelihood keeps rising as the effect falls: these results cannot tell "
+            reason="the likelihood is highest far outside the results: they cannot tell "
             "selection from no effect",
         )  # fmt: skip
     if not fit.converged or not np.isfinite(fit.se):
@@ -271,3 +271,37 @@ def _standard_error(model: _Model, at: Array, bounds: list[tuple[float, float]])
         return float("nan")
     place = inside.index(0)
     return float(np.sqrt(np.linalg.inv(hessian)[place, place]))
+
+
+def selection_test(
+    estimates: Array,
+    variances: Array,
+    *,
+    null_variances: Array | None = None,
+    cuts: Sequence[float] = (0.025,),
+    shares: Array | None = None,
+) -> Diagnostic:
+    """Likelihood-ratio test of equal weights (Vevea & Hedges 1995) as one diagnostic."""
+    key, label, used = "selection-ratio", "Step function against no selection", np.size(estimates)
+    limits = (
+        "The chi-square law behind it needs many results on either side of each step; with "
+        f"{number_of_results(used)} a high p is no all-clear."
+    )
+    if used < 3:
+        return Diagnostic(
+            key=key, label=label, used=used, status="too few results",
+            reason="three parameters need three results", limits=limits,
+        )  # fmt: skip
+    fit = fit_step_function(
+        estimates, variances, null_variances=null_variances, cuts=cuts, shares=shares
+    )
+    one_sided = bool((fit.counts == 0).any())
+    return Diagnostic(
+        key=key, label=label, used=used, statistic=fit.ratio, symbol=f"LR({len(cuts)})", p=fit.p,
+        status="fine" if fit.converged and not (one_sided or fit.runaway) else "at a boundary",
+        reason="some p-interval holds no result, so p is only a rough guide" if one_sided else "",
+        finding="results on the two sides of a step seem to be printed with different chances"
+        if fit.p < 0.1
+        else "unequal chances of being printed are not shown",
+        limits=limits,
+    )  # fmt: skip

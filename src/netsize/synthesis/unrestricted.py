@@ -14,7 +14,7 @@ from numpy.typing import ArrayLike
 from scipy.special import ndtri
 
 from netsize.numerics.arrays import Array, BoolArray
-from netsize.synthesis.confidence import symmetric, unusable
+from netsize.synthesis.confidence import AGREE_BY_LUCK, symmetric, unusable
 from netsize.synthesis.lines import squared_residuals
 from netsize.synthesis.padding import guarded
 from netsize.synthesis.records import Estimate
@@ -33,11 +33,15 @@ _ADEQUATE = float(ndtri(0.975) + ndtri(0.8))
 
 
 class Unrestricted(NamedTuple):
-    """Means of many literatures, shape (...); `se` and `df` nan for fewer than two results."""
+    """Means of many literatures, shape (...); nan for fewer than two results but for `mean`.
+
+    scale : Q/(k-1), the multiplicative spread.
+    """
 
     mean: Array
     se: Array
     df: Array
+    scale: Array
     used: Array
 
 
@@ -62,8 +66,9 @@ def unrestricted_many(
         total = w.sum(axis=-1)
         mean = (w * y).sum(axis=-1) / total
         df = np.where(k >= 2, k - 1, np.nan)
-        se = np.sqrt(squared_residuals(y - mean[..., None], y, w) / df / total)
-    return Unrestricted(mean, se, df, k)
+        scale = squared_residuals(y - mean[..., None], y, w) / df
+        se = np.sqrt(scale / total)
+    return Unrestricted(mean, se, df, scale, k)
 
 
 def adequately_powered_many(
@@ -113,6 +118,8 @@ def _row(key: str, label: str, fit: Unrestricted, level: float, reason: str) -> 
         return unusable(
             key, label, level=level, used=int(fit.used), reason="the spread needs two results"
         )
+    if 0 < fit.scale < 1:
+        reason = "; ".join(part for part in (reason, AGREE_BY_LUCK) if part)
     return symmetric(
         key,
         label,
