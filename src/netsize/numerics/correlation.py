@@ -64,11 +64,12 @@ def log_density(r: ArrayLike, rho: ArrayLike, n: ArrayLike) -> Array:
 
 
 def lower_tail(r: ArrayLike, rho: ArrayLike, n: ArrayLike) -> Array:
-    """P(R ≤ r), relative error about 1e-11 also far out; arguments as in `log_density`, |r| ≤ 1."""
+    """P(R ≤ r), relative error about 1e-11 also far out; arguments as in `log_density`, any r."""
     r, rho, n = broadcast(r, rho, n)
-    valid = (np.abs(r) <= 1) & (np.abs(rho) <= 1) & (n >= 3)
+    valid = ~np.isnan(r) & (np.abs(rho) <= 1) & (n >= 3)
     with np.errstate(all="ignore"):
-        return np.where(valid, _lower_tail(np.arctanh(r), np.arctanh(rho), n), np.nan)
+        z = np.arctanh(np.clip(r, -1.0, 1.0))
+        return np.where(valid, _lower_tail(z, np.arctanh(rho), n), np.nan)
 
 
 def upper_tail(r: ArrayLike, rho: ArrayLike, n: ArrayLike) -> Array:

@@ -9,9 +9,10 @@ from __future__ import annotations
 import numpy as np
 from numpy.polynomial.legendre import leggauss
 from numpy.typing import ArrayLike
-from scipy.special import gammaln, nctdtr
+from scipy.special import nctdtr
 
 from netsize.numerics.arrays import Array, broadcast
+from netsize.numerics.gamma import stirling_remainder
 from netsize.numerics.roots import increasing_root
 
 __all__ = ["log_density", "lower_tail", "noncentrality", "upper_tail"]
@@ -60,7 +61,7 @@ def log_density(t: ArrayLike, df: ArrayLike, ncp: ArrayLike) -> Array:
         value = (
             -0.5 * np.log(2.0)
             - np.log(np.pi)
-            - _stirling_remainder(nu / 2)
+            - stirling_remainder(nu / 2)
             - (nu + 1) / 2 * np.log1p(t * t / nu)
             - ncp * ncp * nu / (2 * (nu + t * t))
             + nu / 2 * log_ratio
@@ -105,14 +106,6 @@ def noncentrality(t: ArrayLike, df: ArrayLike, probability: ArrayLike) -> Array:
     # T deviates from δ by at most a few standard deviations, which grow with |t|/√(2ν)
     reach = 10 + np.abs(t) * (1 + 20 / np.sqrt(df))
     return increasing_root(exceeds, t - reach, t + reach, t, df, probability)
-
-
-def _stirling_remainder(z: Array) -> Array:
-    """log Γ(z) - [(z - ½) log z - z + ½ log 2π], z > 0."""
-    direct = gammaln(z) - ((z - 0.5) * np.log(z) - z + 0.5 * np.log(2 * np.pi))
-    w = 1 / (z * z)
-    series = (1 / 12 - w * (1 / 360 - w * (1 / 1260 - w * (1 / 1680 - w / 1188)))) / z
-    return np.where(z < 10, direct, series)
 
 
 def _log_integral(nu: Array, mode: Array) -> Array:
