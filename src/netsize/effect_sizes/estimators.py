@@ -146,8 +146,8 @@ def omega_squared(
     df₁+df₂+1 (one-way) unless given. With `others`, the sum of df·F over the other effects, of the
     total variance: df₁(F-1)/(df₁F + df₂ + others + 1).
     """
-    total = np.asarray(df1, dtype=float) + df2 + 1 if n is None else n
-    f, df1, df2, total, others = broadcast(f, df1, df2, total, others)
+    f, df1, df2, others = broadcast(f, df1, df2, others)
+    total = df1 + df2 + 1 if n is None else np.asarray(n, dtype=float)
     explained = df1 * (f - 1)
     whole = np.where(others > 0, df1 * f + df2 + others + 1, explained + total)
     return np.asarray(explained / whole)

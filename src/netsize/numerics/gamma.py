@@ -41,4 +41,4 @@ def stirling_remainder(z: ArrayLike) -> Array:
     direct = gammaln(z) - ((z - 0.5) * np.log(z) - z + 0.5 * np.log(2 * np.pi))
     w = 1 / (z * z)
     series = (1 / 12 - w * (1 / 360 - w * (1 / 1260 - w * (1 / 1680 - w / 1188)))) / z
-    return np.where(z < 10, direct, series)
+    return np.asarray(np.where(z < 10, direct, series))

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import math
 
+from netsize.effect_sizes import estimators
 from netsize.effect_sizes.families.sizes import degrees, total
 from netsize.effect_sizes.families.t_test import student_form
 from netsize.effect_sizes.forms.base import Form
@@ -34,7 +35,8 @@ def from_f(result: ReportedResult, settings: Settings) -> Form:
 def fisher_form(result: ReportedResult, observed: Observed, df1: float, df2: float) -> FisherForm:
     """F on several numerator df with the number of participants told or assumed."""
     within = result.design == "paired"
-    size, notes = df1 + df2 + 1, ()
+    size = df1 + df2 + 1
+    notes: tuple[str, ...] = ()
     if within:
         # df₂/df₁ = n - 1 for one factor within participants, whatever the sphericity correction
         n = total(result) if result.n else round(df2 / df1) + 1
@@ -73,8 +75,6 @@ def _shares(
     observed: Observed, df2: float, result: ReportedResult
 ) -> tuple[tuple[str, float], ...]:
     """η², ε², ω² of F(1, df2), which readers of an F expect beside d."""
-    from netsize.effect_sizes import estimators
-
     if not observed.exact:
         return ()
     f = observed.low**2

@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
-from netsize.effect_sizes.families.sizes import Comparison, total
+from dataclasses import replace
+
+from netsize.effect_sizes.families.sizes import Comparison, comparison, total
 from netsize.effect_sizes.families.t_test import from_t
 from netsize.effect_sizes.forms.base import Form, equal_groups
 from netsize.effect_sizes.forms.normal import NormalForm
@@ -18,10 +20,8 @@ def from_z(result: ReportedResult, settings: Settings) -> NormalForm:
     """z with n, also the z of a rank test or a Wald test."""
     n = total(result)
     design: Comparison | None = None
-    if result.design == "factorial" or (result.design is None and len(result.n) == 2):
-        design = "two-groups"
-    elif result.design is not None and result.design != "factorial":
-        design = result.design
+    if result.design is not None or len(result.n) == 2:
+        design, _ = comparison(result, None)
     groups: tuple[int, ...] = (n,)
     notes: tuple[str, ...] = ()
     if design == "two-groups":
@@ -47,7 +47,5 @@ def from_p(result: ReportedResult, settings: Settings) -> Form:
         raise EvidenceError("no p-value is given")
     form = from_t(result, settings)
     if result.design is None and len(result.n) == 1:
-        from dataclasses import replace
-
         return replace(form, adaptable=True)
     return form

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 
 from netsize.effect_sizes import estimators
 from netsize.effect_sizes.families.f_test import fisher_form
@@ -67,8 +68,6 @@ def from_share(result: ReportedResult, settings: Settings) -> Form:
         observed = observe(result, t_law(df2), settings, root)
         return student_form(result, observed, df2, tuple(notes))
     form = fisher_form(result, observe(result, f_law(df1, df2), settings, f), df1, df2)
-    from dataclasses import replace
-
     return replace(form, assumptions=(*notes, *form.assumptions))
 
 
