@@ -10,6 +10,7 @@ from numpy.typing import ArrayLike
 from scipy.special import chndtr
 
 from netsize.numerics.arrays import Array, broadcast
+from netsize.numerics.far_tail import SMALL, far_tail, repaired
 from netsize.numerics.gamma import stirling_remainder
 from netsize.numerics.poisson_sum import log_mixture
 from netsize.numerics.roots import increasing_root
@@ -54,12 +55,25 @@ def log_density(x: ArrayLike, df: ArrayLike, ncp: ArrayLike) -> Array:
 def lower_tail(x: ArrayLike, df: ArrayLike, ncp: ArrayLike) -> Array:
     """P(X ≤ x); x ≥ 0 (0 below), df > 0, λ ≥ 0, broadcast."""
     x, df, ncp = broadcast(x, df, ncp)
-    return np.asarray(chndtr(np.maximum(x, 0.0), df, ncp))
+    with np.errstate(all="ignore"):
+        tail = chndtr(np.maximum(x, 0.0), df, ncp)
+    return repaired(tail, x < df + ncp, ~np.isnan(x) & (df > 0) & (ncp >= 0))
 
 
 def upper_tail(x: ArrayLike, df: ArrayLike, ncp: ArrayLike) -> Array:
-    """P(X > x), arguments as in `lower_tail`."""
-    return 1.0 - lower_tail(x, df, ncp)
+    """P(X > x), arguments as in `lower_tail`; relative error about 1e-11 far out too."""
+    x, df, ncp = broadcast(x, df, ncp)
+    tail = np.array(1.0 - lower_tail(x, df, ncp))
+    small = (tail < SMALL) & np.isfinite(x)
+    if small.any():
+        x, df, ncp = x[small], df[small], ncp[small]
+
+        def log_height(t: Array, x: Array, df: Array, ncp: Array) -> Array:
+            return log_density(x + t, df, ncp)
+
+        spread = np.sqrt(2 * (df + 2 * ncp))
+        tail[small] = far_tail(log_height, 1e-3 * np.minimum(spread, 1.0), x, df, ncp)
+    return tail
 
 
 def noncentrality(x: ArrayLike, df: ArrayLike, probability: ArrayLike) -> Array:

@@ -11,6 +11,7 @@ from numpy.typing import ArrayLike
 from scipy.special import ncfdtr
 
 from netsize.numerics.arrays import Array, broadcast
+from netsize.numerics.far_tail import SMALL, far_tail, repaired
 from netsize.numerics.gamma import stirling_remainder
 from netsize.numerics.poisson_sum import log_mixture
 from netsize.numerics.roots import increasing_root
@@ -33,9 +34,9 @@ def log_density(f: ArrayLike, df1: ArrayLike, df2: ArrayLike, ncp: ArrayLike) ->
 
     Notes
     -----
-    With α = ν₁/2, β = ν₂/2, p = α/(α+β) and e = f - 1 the central part is
-    α(log(1+e) - e) - (α+β)(log(1+pe) - pe) - log f + ½ log(αβ/(2π(α+β))) less Stirling's
-    remainders: nothing large is left to cancel.
+    With α = ν₁/2, β = ν₂/2 and p = α/(α+β) the central part is
+    -α log(1 + (1-p)(1/f-1)) - β log(1 + p(f-1)) - log f + ½ log(αβ/(2π(α+β))) and Stirling's
+    remainders: powers of f and of 1 + p(f-1) taken singly would cancel and lose digits.
     """
     f, df1, df2, ncp = broadcast(f, df1, df2, ncp)
     with np.errstate(all="ignore"):
@@ -44,10 +45,9 @@ def log_density(f: ArrayLike, df1: ArrayLike, df2: ArrayLike, ncp: ArrayLike) ->
         f, ncp = np.where(valid, f, 1.0), np.where(valid, ncp, 0.0)
         alpha, beta = np.where(valid, df1, 1.0) / 2, np.where(valid, df2, 1.0) / 2
         both = alpha + beta
-        e, p = f - 1, alpha / both
         central = (
-            alpha * (np.where(e > -0.5, np.log1p(e), np.log(f)) - e)
-            - both * (np.log1p(p * e) - p * e)
+            -alpha * np.log1p(beta / both * (1 / f - 1))
+            - beta * np.log1p(alpha / both * (f - 1))
             - np.log(f)
             + 0.5 * np.log(alpha * beta / (2 * np.pi * both))
             - stirling_remainder(alpha)
@@ -62,12 +62,32 @@ def log_density(f: ArrayLike, df1: ArrayLike, df2: ArrayLike, ncp: ArrayLike) ->
 def lower_tail(f: ArrayLike, df1: ArrayLike, df2: ArrayLike, ncp: ArrayLike) -> Array:
     """P(F ≤ f); f ≥ 0 (0 below), df₁, df₂ > 0, λ ≥ 0, broadcast."""
     f, df1, df2, ncp = broadcast(f, df1, df2, ncp)
-    return np.asarray(ncfdtr(df1, df2, ncp, np.maximum(f, 0.0)))
+    with np.errstate(all="ignore"):
+        tail = ncfdtr(df1, df2, ncp, np.maximum(f, 0.0))
+        below = f < (df1 + ncp) / df1
+    return repaired(tail, below, ~np.isnan(f) & (df1 > 0) & (df2 > 0) & (ncp >= 0))
 
 
 def upper_tail(f: ArrayLike, df1: ArrayLike, df2: ArrayLike, ncp: ArrayLike) -> Array:
-    """P(F > f), arguments as in `lower_tail`."""
-    return 1.0 - lower_tail(f, df1, df2, ncp)
+    """P(F > f), arguments as in `lower_tail`; relative error about 1e-10 far out too.
+
+    Far out it is integrated over t with ν₂/(ν₁f+ν₂) falling as e^{-t}, in which every F tail,
+    also those that fall as a power of f, is close to exponential.
+    """
+    f, df1, df2, ncp = broadcast(f, df1, df2, ncp)
+    tail = np.array(1.0 - lower_tail(f, df1, df2, ncp))
+    small = (tail < SMALL) & (f < 1e150)  # a tail there is 0 to double precision for ν₂ > 4
+    if small.any():
+        f, df1, df2, ncp = f[small], df1[small], df2[small], ncp[small]
+        step = 1e-3 / np.sqrt(1 + df2 + ncp)
+        tail[small] = far_tail(_log_height, step, f, df1, df2, ncp)
+    return tail
+
+
+def _log_height(t: Array, f: Array, df1: Array, df2: Array, ncp: Array) -> Array:
+    ratio = df2 / df1
+    further = (f + ratio) * np.exp(t)  # F + ν₂/ν₁ and its derivative with respect to t
+    return np.asarray(log_density(further - ratio, df1, df2, ncp) + np.log(further))
 
 
 def noncentrality(f: ArrayLike, df1: ArrayLike, df2: ArrayLike, probability: ArrayLike) -> Array:
