@@ -79,7 +79,8 @@ def _significant(e, theta):
     if e.kernel == "t":
         return stats.nct.sf(e.cuts[0], e.df[0], theta * e.scale)
     if e.kernel == "f":
-        return stats.ncf.sf(e.cuts[0], *e.df, (theta * e.scale) ** 2)
+        # scipy's ncf.sf gives a negative value at noncentrality 0 exactly
+        return stats.ncf.sf(e.cuts[0], *e.df, np.maximum((theta * e.scale) ** 2, 1e-9))
     r = np.linspace(e.cuts[0], 1 - 1e-9, 801)
     rho = np.tanh(theta)
     return simpson(_density_of_r(r, rho[:, None], e.df[0] + 2), x=r, axis=1)

@@ -25,9 +25,9 @@ from netsize.synthesis.selection import Literature, Priors, effect_grid, literat
 __all__ = ["ProfileFit", "fit_profile"]
 
 _KEEP = 12.0  # log units below the peak at which the window of μ is cut; Φ(-√24) < 1e-6
-_COARSE = (65, 11, 13)  # points of μ, τ, ω while the windows are drawn
-_FINE = (81, 17, 33)
-_SPREAD = 8  # finer points of the confidence distribution per lattice point
+_COARSE = (49, 9, 9)  # points of μ, τ, ω while the windows are drawn
+_FINE = (81, 17, 13)
+_SPREAD = 8  # finer points splined per lattice point
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -66,9 +66,10 @@ def fit_profile(
     margin = 3 * priors.heterogeneity_scale
     low = 0.0 if half_line else float(theta[0]) + margin
     whole = (low, float(theta[-1]) - margin)
-    mu_window, tau_top = whole, 4 * priors.heterogeneity_scale
+    floor = float(np.log(priors.printing_floor))
+    mu_window, tau_top, omega_window = whole, 4 * priors.heterogeneity_scale, (floor, 0.0)
     for _ in range(3):
-        ridge = _ridge(literature, priors, mu_window, tau_top, _COARSE)
+        ridge = _ridge(literature, mu_window, tau_top, omega_window, _COARSE)
         near = ridge.height > ridge.height.max() - _KEEP
         kept = np.flatnonzero(near)
         step = ridge.mu[1] - ridge.mu[0]
@@ -77,11 +78,16 @@ def fit_profile(
             min(float(ridge.mu[kept[-1]] + step), whole[1]),
         )
         tau_top = min(tau_top, 1.5 * float(ridge.tau[near].max()) + tau_top / _COARSE[1])
+        step = (omega_window[1] - omega_window[0]) / (_COARSE[2] - 1)
+        omega_window = (
+            max(float(ridge.log_omega[near].min()) - step, floor),
+            min(float(ridge.log_omega[near].max()) + step, 0.0),
+        )
         shrunk = (drawn[1] - drawn[0]) / (mu_window[1] - mu_window[0])
         mu_window = drawn
         if shrunk > 0.6:
             break
-    ridge = _ridge(literature, priors, mu_window, tau_top, _FINE)
+    ridge = _ridge(literature, mu_window, tau_top, omega_window, _FINE)
     return _conclude(ridge, whole, half_line)
 
 
@@ -97,16 +103,16 @@ class _Ridge:
 
 def _ridge(
     literature: Literature,
-    priors: Priors,
     mu_window: tuple[float, float],
     tau_top: float,
+    omega_window: tuple[float, float],
     sizes: tuple[int, int, int],
 ) -> _Ridge:
     mu = np.linspace(*mu_window, sizes[0])
     tau = np.linspace(0.0, tau_top, sizes[1])
     axes = literature.bands - 1
-    points = sizes[2] if axes == 1 else max(5, sizes[2] // 3)
-    omega = np.linspace(np.log(priors.printing_floor), 0.0, points)
+    points = sizes[2] if axes == 1 else max(5, sizes[2] // 2)
+    omega = np.linspace(*omega_window, points)
     combinations = np.array([(0.0, *c) for c in product(*[omega] * axes)])
     height = surface(literature, mu=mu, tau=tau, log_weights=combinations)  # (T, M, W)
     if axes == 1:
@@ -121,19 +127,10 @@ def _ridge(
 
 
 def _peak(values: Array, nodes: Array) -> tuple[Array, Array]:
-    """Maximum along the last axis and where: a parabola through the best node and neighbours."""
-    best = values.argmax(axis=-1)
-    middle = np.clip(best, 1, nodes.size - 2)
-    left, centre, right = (
-        np.take_along_axis(values, (middle + s)[..., None], axis=-1)[..., 0] for s in (-1, 0, 1)
-    )
-    bend = left - 2 * centre + right
-    with np.errstate(all="ignore"):
-        shift = np.where(bend < 0, (left - right) / (2 * bend), 0.0)
-    inside = (best == middle) & (np.abs(shift) < 1)
-    shift = np.where(inside, shift, 0.0)
-    height = np.where(inside, centre - 0.25 * (left - right) * shift, values.max(axis=-1))
-    return height, nodes[best] + shift * (nodes[1] - nodes[0])
+    """Maximum along the last axis and where, on a cubic spline through the nodes."""
+    fine = np.linspace(nodes[0], nodes[-1], (nodes.size - 1) * _SPREAD + 1)
+    splined = CubicSpline(nodes, values, axis=-1)(fine)
+    return splined.max(axis=-1), fine[splined.argmax(axis=-1)]
 
 
 def _conclude(ridge: _Ridge, whole: tuple[float, float], half_line: bool) -> ProfileFit:

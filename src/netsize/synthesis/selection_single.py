@@ -58,7 +58,7 @@ def conditional_bound(
         share = exceeds(observed, theta)
         if only_significant:
             share = share / exceeds(critical, theta)
-        return assurance - (1.0 - share)
+        return np.asarray(assurance - (1.0 - share))
 
     if evidence.kernel == "r":
         high = float(np.arctanh(min(observed, 1 - 1e-12))) + 10 / np.sqrt(evidence.df[0])

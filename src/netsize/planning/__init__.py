@@ -1,0 +1,6 @@
+"""Floor 3: from evidence to planning distribution to plan."""
+
+from netsize.planning.plan import Plan, plan
+from netsize.planning.settings import PlanSettings
+
+__all__ = ["Plan", "PlanSettings", "plan"]

@@ -1,0 +1,108 @@
+"""What a plan rests on and what should give pause, in words."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from netsize.planning.answer import Answer
+from netsize.planning.evidence import Literature
+from netsize.planning.rows import Row
+from netsize.planning.settings import PlanSettings
+from netsize.reported.check import check
+from netsize.sizing.study import Study
+
+__all__ = ["assumptions", "warnings"]
+
+_FEW = 5  # results below which one more could change much
+_FAR = 1.25  # ratio of n at which a decision error of the literature touches the answer
+
+
+def assumptions(
+    literature: Literature,
+    study: Study,
+    settings: PlanSettings,
+    study_notes: tuple[str, ...],
+) -> tuple[str, ...]:
+    """Every assumption: about single results (grouped where the words agree), then of the plan."""
+    by_text: dict[str, list[str]] = {}
+    for row in literature.rows:
+        for text in row.assumptions:
+            by_text.setdefault(text, []).append(row.label)
+    everyone = len(literature.rows)
+    single = [
+        f"{'all results' if len(labels) == everyone > 1 else ', '.join(labels)}: {text}"
+        for text, labels in by_text.items()
+    ]
+    shared = len(literature.samples) < everyone
+    p = literature.averaged.priors
+    cuts = ", ".join(f"{c:g}" for c in settings.cut_points)
+    general = [
+        *literature.table.notes,
+        *study_notes,
+        *study.design.assumptions(),
+        f"results were selected for printing by p at two-sided {cuts} in the predicted direction; "
+        "set with --cut-points",
+        f"priors: mean effect normal with SD {p.effect_scale:g}, between-study SD half-normal with "
+        f"scale {p.heterogeneity_scale:g} on the pooling metric, chance of printing a result below "
+        f"the first band log-uniform from {p.printing_floor:g} to 1, negligible effect with "
+        f"probability {p.negligible:g}",
+    ]
+    if shared:
+        general.append(
+            f"results of one sample correlate {settings.within_sample_correlation:g}; set with "
+            "--within-sample-correlation"
+        )
+    return (*single, *general)
+
+
+def warnings(
+    literature: Literature,
+    answer: Answer,
+    rows: tuple[Row, ...],
+    settings: PlanSettings,
+) -> tuple[str, ...]:
+    """What a careful adviser would say unasked."""
+    out: list[str] = []
+    for row in literature.rows:
+        out.extend(
+            f"{row.label}: {finding.message}"
+            + ("; this changes its significance" if finding.changes_significance else "")
+            for finding in check(row.result)
+        )
+    k, samples = len(literature.rows), len(literature.samples)
+    if samples == 1 and k > 1:
+        out.append(
+            "all results come from one sample: heterogeneity between studies cannot be seen, and "
+            "the answer rests on the prior for it"
+        )
+    elif samples < _FEW:
+        out.append(
+            f"only {samples} independent sample{'s' if samples > 1 else ''}: the priors weigh "
+            "heavily; see how the answer moves with --sensitivity"
+        )
+    if literature.significant == k:
+        out.append(
+            "every result is significant: how strongly printing depended on significance can "
+            "hardly be told from the evidence"
+        )
+    if literature.significant == 0:
+        out.append("no result is significant in the predicted direction")
+    if answer.probability_negligible > 0.5:
+        out.append(
+            "the evidence is better explained by no effect than by one: a small first study or a "
+            "replication may be wiser than the full study"
+        )
+    if not literature.averaged.rested:
+        out.append(
+            f"the numerical grids did not settle: quantiles still moved by "
+            f"{literature.averaged.error:.3f}; treat the planning value as that uncertain"
+        )
+    profile = literature.profile.mean.quantile(1 - settings.assurance)
+    averaged = literature.averaged.mean.quantile(1 - settings.assurance)
+    scale = literature.averaged.priors.effect_scale
+    if np.isfinite(profile) and abs(profile - averaged) > 0.25 * scale:
+        out.append(
+            "the two readings of the selection model differ clearly: the answer leans on the "
+            "priors more than on the evidence"
+        )
+    return tuple(out)

@@ -1,0 +1,232 @@
+"""The central table of a plan: a row for each reading of the evidence, with its n."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+from scipy.special import stdtrit
+
+from netsize.effect_sizes.metrics import Metric
+from netsize.planning.answer import Answer
+from netsize.planning.evidence import Literature
+from netsize.planning.goals import Sized, power_at, size_for
+from netsize.planning.settings import PlanSettings
+from netsize.sizing.study import Study
+from netsize.synthesis.records import Estimate
+
+__all__ = ["Row", "plan_rows"]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Row:
+    """One reading of the evidence.
+
+    effect, low, high : on the shown scale; None where there is no number (not finite included).
+    limit : the effect that n is solved for, which differs from `effect` for the goal "assurance".
+    power_of_naive_n : power that the as-printed n has at this row's effect; None where the
+    as-printed reading has no finite n.
+    """
+
+    key: str
+    label: str
+    effect: float | None
+    low: float | None
+    high: float | None
+    limit: float | None
+    sized: Sized
+    power_of_naive_n: float | None
+    note: str = ""
+
+    def to_dict(self) -> dict[str, Any]:
+        """Plain JSON types."""
+        return {
+            "key": self.key,
+            "label": self.label,
+            "effect": self.effect,
+            "low": self.low,
+            "high": self.high,
+            "limit": self.limit,
+            **self.sized.to_dict(),
+            "power_of_naive_n": self.power_of_naive_n,
+            "note": self.note,
+        }
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class _Reading:
+    """A row before its n: `cautious` is the effect at the assurance asked, for that goal."""
+
+    key: str
+    label: str
+    effect: float | None
+    low: float | None = None
+    high: float | None = None
+    cautious: float | None = None
+    note: str = ""
+
+
+def plan_rows(
+    literature: Literature,
+    corrections: Sequence[Estimate],
+    answer: Answer,
+    study: Study,
+    settings: PlanSettings,
+    scale: str,
+) -> tuple[Row, ...]:
+    """Every row, sized; `scale` names the design's metric that the shown scale corresponds to."""
+    metric = literature.table.metric
+    readings = [
+        *_printed(literature, settings),
+        *_pooled(literature, settings),
+        *(_correction(e, metric, settings) for e in corrections),
+        _profile(literature, settings),
+        _Reading(
+            key="planning-median",
+            label="median of the planning distribution",
+            effect=answer.median,
+            low=answer.low,
+            high=answer.high,
+            cautious=answer.quantile,
+        ),
+        _Reading(
+            key="planning-value",
+            label="planning value",
+            effect=answer.value,
+            cautious=answer.value,
+            note="smallest effect of interest" if answer.from_smallest else "",
+        ),
+    ]
+    inward = study.metric(scale).inward
+    chosen = [
+        r.cautious if settings.goal == "assurance" and r.cautious is not None else r.effect
+        for r in readings
+    ]
+    limits = [c if c is not None and np.isfinite(c) else np.nan for c in chosen]
+    sized = size_for(study, settings, inward(np.array(limits)))
+    naive = sized[0].units
+    effects = np.array([np.nan if r.effect is None else r.effect for r in readings])
+    with np.errstate(invalid="ignore"):
+        powers = power_at(study, naive, inward(effects)) if naive else np.full(effects.size, np.nan)
+    return tuple(
+        Row(
+            key=r.key,
+            label=r.label,
+            effect=_plain(r.effect),
+            low=_plain(r.low),
+            high=_plain(r.high),
+            limit=_plain(limit),
+            sized=s,
+            power_of_naive_n=_plain(float(power)),
+            note=r.note,
+        )
+        for r, limit, s, power in zip(readings, limits, sized, powers, strict=True)
+    )
+
+
+def _printed(literature: Literature, settings: PlanSettings) -> list[_Reading]:
+    """As the papers print it: the plain mean, and the largest."""
+    printed = literature.printed
+    if not printed.size:
+        nothing = "no result was printed with a value"
+        return [
+            _Reading(key="as-printed", label="as printed (mean)", effect=None, note=nothing),
+            _Reading(key="largest-printed", label="largest printed", effect=None, note=nothing),
+        ]
+    rows = [row for row in literature.rows if row.printed is not None]
+    largest = rows[int(printed.argmax())]
+    shown = literature.table.metric.shown
+    own = [float(x) for x in shown(np.array([largest.low, largest.high]))]
+    mean = float(printed.mean())
+    low, high, cautious = own[0], own[1], None
+    if printed.size > 1:
+        se = float(printed.std(ddof=1)) / np.sqrt(printed.size)
+        t = float(stdtrit(printed.size - 1, (1 + settings.level) / 2))
+        low, high = mean - t * se, mean + t * se
+        cautious = mean + se * float(stdtrit(printed.size - 1, 1 - settings.assurance))
+    return [
+        _Reading(
+            key="as-printed",
+            label="as printed (mean)",
+            effect=mean,
+            low=low,
+            high=high,
+            cautious=cautious,
+        ),
+        _Reading(
+            key="largest-printed",
+            label="largest printed",
+            effect=float(printed.max()),
+            low=own[0],
+            high=own[1],
+            note=largest.label,
+        ),
+    ]
+
+
+def _pooled(literature: Literature, settings: PlanSettings) -> list[_Reading]:
+    pooled, shown = literature.pooled, literature.table.metric.shown
+    if pooled is None:
+        return [
+            _Reading(
+                key="pooled",
+                label="pooled, random effects",
+                effect=None,
+                note="no result has a point estimate",
+            )
+        ]
+    df = pooled.df if np.isfinite(pooled.df) else 1e9
+    cautious = pooled.mean + pooled.se * float(stdtrit(df, 1 - settings.assurance))
+    values = shown(np.array([pooled.mean, pooled.low, pooled.high, cautious]))
+    effect, low, high, cautious = (float(v) for v in values)
+    return [
+        _Reading(
+            key="pooled",
+            label="pooled, random effects",
+            effect=effect,
+            low=low,
+            high=high,
+            cautious=cautious,
+        )
+    ]
+
+
+def _correction(estimate: Estimate, metric: Metric, settings: PlanSettings) -> _Reading:
+    def shown(value: float | None) -> float | None:
+        return None if value is None else float(metric.shown(np.array([value]))[0])
+
+    distribution = estimate.distribution
+    cautious = (
+        None if distribution is None else float(distribution.quantile(1 - settings.assurance))
+    )
+    return _Reading(
+        key=estimate.key,
+        label=estimate.label,
+        effect=shown(estimate.estimate),
+        low=shown(estimate.low),
+        high=shown(estimate.high),
+        cautious=shown(cautious),
+        note=estimate.reason if estimate.status != "fine" else "",
+    )
+
+
+def _profile(literature: Literature, settings: PlanSettings) -> _Reading:
+    profile, shown = literature.profile, literature.table.metric.shown
+    tails = [(1 - settings.level) / 2, (1 + settings.level) / 2, 1 - settings.assurance]
+    low, high, cautious = (float(x) for x in shown(profile.mean.quantile(tails)))
+    effect = float(shown(np.array([profile.estimate]))[0])
+    return _Reading(
+        key="exact-profile",
+        label="selection model, profile",
+        effect=effect,
+        low=low,
+        high=high,
+        cautious=cautious,
+        note="" if np.isfinite(profile.estimate) else "no finite maximum",
+    )
+
+
+def _plain(value: float | None) -> float | None:
+    return value if value is not None and np.isfinite(value) else None

@@ -1,0 +1,98 @@
+"""From the metric of the evidence to the design of the new study."""
+
+from __future__ import annotations
+
+from collections import Counter
+
+import numpy as np
+
+from netsize.effect_sizes.metrics import Metric
+from netsize.effect_sizes.records import EffectTable
+from netsize.errors import EvidenceError, SettingError
+from netsize.numerics.arrays import Array
+from netsize.planning.settings import PlanSettings
+from netsize.sizing.study import Study, make_study
+
+__all__ = ["METRIC_OF", "effect_on", "metric_for", "study_for"]
+
+# The pooling metric whose shown scale each design takes, and what that scale is called there.
+METRIC_OF = {
+    "two-groups": ("mean-difference", "d"),
+    "paired": ("difference-score", "dz"),
+    "one-sample": ("difference-score", "d"),
+    "correlation": ("fisher-z", "r"),
+    "anova": ("cohen-f", "f"),
+    "factorial": ("cohen-f", "f"),
+    "repeated": ("cohen-f", "f"),
+    "regression": ("cohen-f", "f"),
+}
+
+
+def study_for(table: EffectTable, settings: PlanSettings) -> tuple[Study, tuple[str, ...]]:
+    """The study to size and the assumptions made in choosing it.
+
+    Without a design asked for it is the one that the evidence came from; several kinds of F need
+    an answer from the user.
+    """
+    name = settings.design
+    notes: tuple[str, ...] = ()
+    options = dict(settings.design_options)
+    if name is None:
+        name, notes, found = _matching(table)
+        options = found | options
+    study = make_study(name, alpha=settings.alpha, sides=settings.sides, **options)
+    return study, notes
+
+
+def effect_on(study: Study, metric: Metric, value: Array) -> Array:
+    """Effects on the metric's shown scale, expressed on the design's own scale."""
+    scale = METRIC_OF[study.design.name][1]
+    return np.asarray(study.metric(scale).inward(np.asarray(value, dtype=float)))
+
+
+def metric_for(settings: PlanSettings) -> str | None:
+    """The metric to convert the evidence to: the user's, else the design's, else open."""
+    if settings.design is None:
+        return settings.metric
+    if settings.design not in METRIC_OF:
+        raise SettingError(
+            "--design",
+            f"{settings.design!r} cannot be planned from pooled evidence; a plan takes "
+            f"{', '.join(METRIC_OF)} (size other designs with `netsize solve`)",
+        )
+    needed = METRIC_OF[settings.design][0]
+    if settings.metric not in (None, needed):
+        raise SettingError(
+            "--metric", f"the design {settings.design} is planned on {needed}, leave it out"
+        )
+    return needed
+
+
+def _matching(table: EffectTable) -> tuple[str, tuple[str, ...], dict[str, int]]:
+    metric = table.metric.name
+    if metric == "mean-difference":
+        return "two-groups", ("new study: two equal groups, as the evidence; set --design",), {}
+    if metric == "fisher-z":
+        return "correlation", ("new study: one correlation, as the evidence; set --design",), {}
+    if metric == "difference-score":
+        kinds = Counter(row.result.design for row in table.rows)
+        name = "one-sample" if kinds["one-sample"] > kinds["paired"] else "paired"
+        return name, (f"new study: {name}, as most of the evidence; set --design",), {}
+    if metric == "cohen-f":
+        return _matching_f(table)
+    raise EvidenceError(
+        "effects on a log-ratio scale do not fix the size of a new study by themselves; weigh them "
+        "with `netsize weigh` and size two proportions with `netsize solve`"
+    )
+
+
+def _matching_f(table: EffectTable) -> tuple[str, tuple[str, ...], dict[str, int]]:
+    first = {row.evidence.df[0] for row in table.rows if row.evidence.kernel == "f"}
+    if len(first) != 1 or next(iter(first)) != int(next(iter(first))):
+        raise EvidenceError(
+            "the F tests have different numerator degrees of freedom; say which design the new "
+            "study has, e.g. --design anova --groups 3 or --design factorial --df1 2 --cells 6"
+        )
+    groups = int(first.pop()) + 1
+    note = f"new study: one-way, {groups} equal groups, as the evidence; set --design and --groups"
+    return "anova", (note,), {"groups": groups}

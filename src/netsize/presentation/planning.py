@@ -1,0 +1,171 @@
+"""A plan as text: the one-sentence answer, the table, what it rests on."""
+
+from __future__ import annotations
+
+from netsize.planning.answer import Alternative
+from netsize.planning.consequences import Consequence, Habit
+from netsize.planning.plan import Plan
+from netsize.presentation.format import count, counts, effect, interval, percent, probability
+from netsize.presentation.terminal import show_list, show_table, show_text
+
+__all__ = ["CAUTION", "headline", "show_plan"]
+
+CAUTION = (
+    "Estimates are no guarantee. Follow the ethics and regulatory rules that apply to you, and "
+    "have a qualified statistician review clinical or animal protocols."
+)
+
+
+def headline(plan: Plan) -> str:
+    """The answer in a sentence or two: the n, or that no finite n exists."""
+    answer, symbol = plan.answer, plan.metric.symbol
+    naive = plan.row("as-printed")
+    if not answer.finite:
+        sentence = (
+            f"No finite sample size reaches {percent(plan.settings.power)} power with "
+            f"{percent(answer.assurance)} assurance: the {_ordinal(1 - answer.assurance)} "
+            f"percentile of the planning distribution is {symbol} = {effect(answer.quantile)}, "
+            "not above zero."
+        )
+        if answer.alternatives:
+            best = answer.alternatives[0]
+            sentence += (
+                " The highest assurance with a finite size is "
+                f"{percent(answer.highest_assurance)}; with {best.what}, "
+                f"{count(best.sized.n_total)} participants are needed."
+            )
+        return sentence
+    basis = (
+        "the smallest effect of interest"
+        if answer.from_smallest
+        else f"the {_ordinal(1 - answer.assurance)} percentile of what the evidence supports"
+    )
+    sentence = (
+        f"Plan for {count(answer.sized.n_total)} participants ({_per_group(plan)}): "
+        f"{percent(plan.settings.power)} power at {symbol} = {effect(answer.value)}, {basis}."
+    )
+    if naive.sized.n_total is not None and naive.power_of_naive_n is not None:
+        power = plan.row("planning-value").power_of_naive_n
+        sentence += (
+            f" Taken as printed ({symbol} = {effect(naive.effect)}), the papers would suggest "
+            f"{count(naive.sized.n_total)}, whose power at that value is {percent(power or 0.0)}."
+        )
+    return sentence
+
+
+def show_plan(plan: Plan) -> None:
+    """Print a plan: answer, evidence, table, chances, consequences, assumptions, warnings."""
+    show_text(headline(plan))
+    show_text("")
+    show_text(_evidence(plan))
+    show_text("")
+    symbol = plan.metric.symbol
+    show_table(
+        [
+            ("reading of the evidence", "left"),
+            (symbol, "right"),
+            (f"{plan.settings.level:.0%} interval", "right"),
+            (f"n per {plan.study.design.group_word}", "right"),
+            ("n total", "right"),
+            ("power of as-printed n", "right"),
+        ],
+        [
+            (
+                row.label + (f" ({row.note})" if row.note else ""),
+                effect(row.effect),
+                interval(row.low, row.high),
+                counts(row.sized.n_per_group) if row.sized.n_total else _no_size(row.effect),
+                count(row.sized.n_total),
+                probability(row.power_of_naive_n),
+            )
+            for row in plan.rows
+        ],
+    )
+    show_text("")
+    for sentence in _chances(plan):
+        show_text(sentence)
+    if plan.answer.alternatives:
+        show_list("Sizes that exist:", [_alternative(plan, a) for a in plan.answer.alternatives])
+        show_text(
+            "Or name a smallest effect of interest (--smallest-effect), or plan interim looks."
+        )
+    show_list("If the as-printed n were used:", [_consequence(plan, c) for c in plan.consequences])
+    show_list("Common habits, for contrast:", [_habit(h) for h in plan.habits])
+    show_list("Left out:", [f"{x.label}: {x.reason}" for x in plan.literature.left_out])
+    show_list("Warnings:", list(plan.warnings))
+    show_list("Assumed:", list(plan.assumptions))
+    show_text(CAUTION)
+
+
+def _evidence(plan: Plan) -> str:
+    literature = plan.literature
+    k, samples = len(literature.rows), len(literature.samples)
+    return (
+        f"Evidence: {k} result{'s' if k != 1 else ''} from {samples} "
+        f"sample{'s' if samples != 1 else ''}, {count(sum(literature.samples.values()))} "
+        f"participants; {literature.significant} significant in the predicted direction; pooled as "
+        f"{plan.metric.title} ({plan.metric.symbol})."
+    )
+
+
+def _per_group(plan: Plan) -> str:
+    groups = plan.answer.sized.n_per_group or ()
+    if len(groups) == 1:
+        return "one group"
+    return f"{counts(groups)} per {plan.study.design.group_word}"
+
+
+def _no_size(value: float | None) -> str:
+    return "none" if value is not None and value <= 0 else "-"
+
+
+def _chances(plan: Plan) -> list[str]:
+    answer = plan.answer
+    out = [
+        f"P(negligible effect) = {probability(answer.probability_negligible)}. Given an effect, "
+        f"{answer.origin}: median {effect(answer.median)}, central 95% "
+        f"{interval(answer.low, answer.high)}."
+    ]
+    if answer.chance_significant is not None:
+        out.append(
+            f"Chance that the sized study ends significant as predicted, negligible effects "
+            f"included: {probability(answer.chance_significant)}; no study, however large, exceeds "
+            f"{probability(answer.ceiling)}."
+        )
+    else:
+        out.append(
+            f"Chance of a significant result as predicted, as n grows without end: "
+            f"{probability(answer.ceiling)}."
+        )
+    return out
+
+
+def _alternative(plan: Plan, a: Alternative) -> str:
+    return f"{a.what}: {plan.metric.symbol} = {effect(a.effect)}, n = {count(a.sized.n_total)}"
+
+
+def _consequence(plan: Plan, c: Consequence) -> str:
+    text = (
+        f"were the effect the {c.label} ({plan.metric.symbol} = {effect(c.effect)}), "
+        f"{count(c.n_total)} participants would give power {probability(c.power)}"
+    )
+    if c.exaggeration is None:
+        return text
+    return (
+        f"{text}; a significant estimate would be {c.exaggeration:.1f} times too large on average "
+        f"and have the wrong sign with probability {probability(c.sign_error)}"
+    )
+
+
+def _habit(h: Habit) -> str:
+    return (
+        f"{h.label}, n total {count(h.n_total)}: power {probability(h.power_at_value)} at the "
+        f"planning value, {probability(h.power_at_median)} at the median"
+    )
+
+
+def _ordinal(probability: float) -> str:
+    whole = round(probability * 100)
+    endings = {1: "st", 2: "nd", 3: "rd"}
+    suffix = "th" if whole % 100 in (11, 12, 13) else endings.get(whole % 10, "th")
+    return f"{whole}{suffix}"
