@@ -174,9 +174,7 @@ def _from_p(result: ReportedResult, law: NullLaw, notes: list[str]) -> tuple[flo
 
 
 def _sign(result: ReportedResult, value: float | None) -> int:
-    if result.direction_origin == "tag":
-        return result.direction
-    return -1 if result.direction < 0 or (value is not None and value < 0) else 1
+    return -result.direction if value is not None and value < 0 else result.direction
 
 
 def _require_finite(value: float, law: NullLaw) -> None:

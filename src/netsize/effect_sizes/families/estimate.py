@@ -22,17 +22,17 @@ def from_estimate(result: ReportedResult, settings: Settings) -> EstimateForm:
             f"an estimate needs its metric, one of {', '.join(METRICS)}"
             + ("" if result.metric is None else f"; {result.metric!r} is none of them")
         )
-    if result.value is None or not math.isfinite(result.value) or result.relation != "=":
+    value = result.value
+    if value is None or not math.isfinite(value) or result.relation != "=":
         raise EvidenceError("an estimate needs a finite value")
     metric = METRICS[result.metric]
-    if not metric.signed and result.value < 0:
+    if not metric.signed and value < 0:
         raise EvidenceError(f"{metric.title} cannot be negative")
-    error, notes = error_from_interval(result, result.value)
+    error, notes = error_from_interval(result, value)
     n = sum(result.n)
-    sign = result.direction if result.direction_origin == "tag" else 1
     return EstimateForm(
         result=result,
-        value=abs(result.value) * sign if sign < 0 else result.value,
+        value=value * result.direction if metric.signed else value,
         standard_error=error,
         home=metric.name,
         kind=f"ready-made estimates ({metric.name})",

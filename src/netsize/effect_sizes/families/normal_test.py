@@ -45,7 +45,9 @@ def from_p(result: ReportedResult, settings: Settings) -> Form:
     """
     if result.p is None:
         raise EvidenceError("no p-value is given")
-    form = from_t(result, settings)
+    # a p-value printed alone may stand as the value itself
+    form = from_t(replace(result, value=None, relation="="), settings)
+    form = replace(form, result=result)
     if result.design is None and len(result.n) == 1:
         return replace(form, adaptable=True)
     return form
