@@ -81,7 +81,7 @@ def effects(
         raise EvidenceError(_nothing(left_out))
     return EffectTable(
         metric=chosen,
-        rows=_with_intervals(rows, level),
+        rows=_finished(rows, level),
         left_out=tuple(left_out),
         notes=(*notes, *_direction_note(rows)),
     )
@@ -100,10 +100,17 @@ def _results(
     return tuple(source), []
 
 
-def _with_intervals(rows: list[EffectSize], level: float) -> tuple[EffectSize, ...]:
+def _finished(rows: list[EffectSize], level: float) -> tuple[EffectSize, ...]:
     low, high = exact_intervals([row.evidence for row in rows], level=level)
     return tuple(
-        replace(row, low=float(a), high=float(b)) for row, a, b in zip(rows, low, high, strict=True)
+        replace(
+            row,
+            low=float(a),
+            high=float(b),
+            # what the reader took as meant comes first; nothing is said twice
+            assumptions=tuple(dict.fromkeys((*row.result.notes, *row.assumptions))),
+        )
+        for row, a, b in zip(rows, low, high, strict=True)
     )
 
 

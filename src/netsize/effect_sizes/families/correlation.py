@@ -29,6 +29,8 @@ def from_correlation(result: ReportedResult, settings: Settings) -> StudentForm:
     observed = observe(result, _r_law(df), settings, result.value).mapped(lambda r: _t_of(r, df))
     held = round(n - pairs)
     notes = () if held == 0 else (f"partial correlation, {held} variables held constant",)
+    if result.metric == "partial-r" and not result.df:
+        notes = ("variables held constant not counted: give the df of the partial correlation",)
     return StudentForm(
         result=result,
         observed=observed,

@@ -5,7 +5,7 @@ from __future__ import annotations
 import math
 
 from netsize.effect_sizes.families.f_test import fisher_form
-from netsize.effect_sizes.forms.base import Form
+from netsize.effect_sizes.forms.base import GIVE_CORRELATION, Form
 from netsize.effect_sizes.forms.student import StudentForm
 from netsize.effect_sizes.observed import Observed, f_law, observe, t_law
 from netsize.effect_sizes.settings import Settings
@@ -52,8 +52,7 @@ def _paired(result: ReportedResult, settings: Settings) -> StudentForm:
     rho = result.correlation if result.correlation is not None else settings.correlation
     if rho is None:
         raise EvidenceError(
-            "the SD of the differences needs the within-pair correlation; give it for all with "
-            "--correlation 0.5 or beside the line as [within-pair r .5]"
+            f"the SD of the differences needs the within-pair correlation; {GIVE_CORRELATION}"
         )
     n = min(first.n, second.n)
     sd = math.sqrt(first.sd**2 + second.sd**2 - 2 * rho * first.sd * second.sd)

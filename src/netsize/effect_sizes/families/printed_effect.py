@@ -9,7 +9,7 @@ from netsize.effect_sizes import estimators
 from netsize.effect_sizes.families.f_test import fisher_form
 from netsize.effect_sizes.families.sizes import comparison, degrees, total, two_groups
 from netsize.effect_sizes.families.t_test import student_form
-from netsize.effect_sizes.forms.base import Form
+from netsize.effect_sizes.forms.base import GIVE_CORRELATION, Form
 from netsize.effect_sizes.forms.student import StudentForm
 from netsize.effect_sizes.observed import f_law, observe, t_law
 from netsize.effect_sizes.settings import Settings
@@ -20,38 +20,54 @@ __all__ = ["from_share", "from_standardized"]
 
 
 def from_standardized(result: ReportedResult, settings: Settings) -> StudentForm:
-    """d or g with n: multiplied back into the t it came from."""
+    """d, g, d_z, d_av, d_rm or Glass's Δ with n: multiplied back into the t it came from."""
     if result.value is None:
         raise EvidenceError("no value is given")
-    n = total(result)
+    name, n = result.metric or "d", total(result)
     design, _ = comparison(result, None)
+    notes = [f"{name} turned back into its t"]
     if design == "correlation":
         raise EvidenceError("a standardized mean difference does not belong to a correlation")
     if design == "two-groups":
         groups, _ = two_groups(result, None)
         df, scale = float(n - 2), math.sqrt(groups[0] * groups[1] / n)
+        if name == "Δ":
+            notes.append("standardized as if both groups had the control group's SD")
     else:
         n = result.n[0] if len(set(result.n)) == 1 else n
         df, scale = float(n - 1), math.sqrt(n)
-    if df < 1:
-        raise EvidenceError(f"n = {n} is too small for a standardized mean difference")
+        if name in ("dav", "drm"):  # standardized by the SD of the scores, not of the differences
+            scale /= math.sqrt(2 * (1 - _within_pair(result, settings)))
+        elif name != "dz" and design == "paired":
+            notes.append("taken as standardized by the SD of the differences")
     if result.df:
         df = degrees(result)
-    d, notes = result.value, [f"{result.metric or 'd'} turned back into its t"]
-    if result.metric == "g":
+    if df < 1:
+        raise EvidenceError(f"n = {n} is too small for a standardized mean difference")
+    d = result.value
+    if name == "g":
         if df < 2:
             raise EvidenceError("g needs at least 2 error degrees of freedom")
         d = d / float(estimators.small_sample_factor(df))
-    if design != "two-groups":
-        notes.append("taken as standardized by the SD of the differences")
     observed = observe(result, t_law(df), settings, d * scale)
     return student_form(result, observed, df, tuple(notes))
+
+
+def _within_pair(result: ReportedResult, settings: Settings) -> float:
+    rho = result.correlation if result.correlation is not None else settings.correlation
+    if rho is None:
+        raise EvidenceError(
+            f"{result.metric} needs the within-pair correlation; {GIVE_CORRELATION}"
+        )
+    return rho
 
 
 def from_share(result: ReportedResult, settings: Settings) -> Form:
     """η², ω², ε² or R² with n: turned back into the F of a between-participants test."""
     share, n = result.value, total(result)
-    kind = result.metric or "eta2"
+    kind = (result.metric or "eta2").removeprefix("partial-")
+    if kind.startswith("generalized"):
+        raise EvidenceError("a generalized η² does not tell its F; give F with its df")
     df1, notes = 1.0, [f"{kind} turned back into its F"]
     if result.df:
         df1 = degrees(result, 0)

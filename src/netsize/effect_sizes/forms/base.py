@@ -11,7 +11,12 @@ from netsize.effect_sizes.settings import Settings
 from netsize.errors import EvidenceError
 from netsize.reported.records import ReportedResult
 
-__all__ = ["Form", "equal_groups", "refuse"]
+__all__ = ["GIVE_CORRELATION", "Form", "equal_groups", "refuse"]
+
+GIVE_CORRELATION = (
+    "give it for all with --within-pair .5 (correlation=0.5 in Python), or beside the line as "
+    "[within-pair r .5]"
+)
 
 
 class Form(Protocol):

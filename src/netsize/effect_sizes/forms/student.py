@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from typing import Literal
 
 from netsize.effect_sizes import estimators
-from netsize.effect_sizes.forms.base import equal_groups, refuse
+from netsize.effect_sizes.forms.base import GIVE_CORRELATION, equal_groups, refuse
 from netsize.effect_sizes.observed import Observed
 from netsize.effect_sizes.records import EffectSize, Evidence
 from netsize.effect_sizes.settings import Settings
@@ -23,10 +23,7 @@ _KINDS = {
     "one-sample": ("one-sample comparisons", "difference-score"),
     "correlation": ("correlations", "fisher-z"),
 }
-_NEED_RHO = (
-    "the within-pair correlation is missing; give it for all with --correlation 0.5 or beside "
-    "the line as [within-pair r .5]"
-)
+_NEED_RHO = f"the within-pair correlation is missing; {GIVE_CORRELATION}"
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
