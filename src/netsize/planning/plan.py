@@ -27,7 +27,7 @@ from netsize.synthesis.records import Estimate
 if TYPE_CHECKING:
     import pandas as pd
 
-__all__ = ["Plan", "plan"]
+__all__ = ["Plan", "answer_again", "plan"]
 
 _POINTS = 61  # of the power curve that figures draw
 
@@ -165,15 +165,7 @@ def plan(
     study, study_notes = study_for(table, settings)
     literature = gather(table, settings, left_out=left_out)
     scale = METRIC_OF[study.design.name][1]
-    pooled, origin = planning_distribution(literature, settings)
-    answered = answer(
-        _shown(pooled, table.metric),
-        origin,
-        probability_negligible=literature.averaged.probability_negligible,
-        study=study,
-        settings=settings,
-        scale=scale,
-    )
+    answered = _answer(literature, settings, study)
     corrections = (
         correct(
             table,
@@ -201,8 +193,24 @@ def plan(
     )
 
 
-def _shown(distribution: GridDistribution, metric: Metric) -> GridDistribution:
-    return distribution.mapped(metric.shown)
+def answer_again(
+    results: Sequence[ReportedResult], *, settings: PlanSettings, study: Study, metric: Metric
+) -> Answer:
+    """The answer alone from other results or settings, for the same study and metric."""
+    table, _ = table_of(results, settings, metric=metric.name, skip_unread=False)
+    return _answer(gather(table, settings), settings, study)
+
+
+def _answer(literature: Literature, settings: PlanSettings, study: Study) -> Answer:
+    distribution, origin = planning_distribution(literature, settings)
+    return answer(
+        distribution.mapped(literature.table.metric.shown),
+        origin,
+        probability_negligible=literature.averaged.probability_negligible,
+        study=study,
+        settings=settings,
+        scale=METRIC_OF[study.design.name][1],
+    )
 
 
 def _summary(distribution: GridDistribution) -> dict[str, float | None]:
