@@ -139,18 +139,31 @@ def _agreement(weighing: Weighing, usable: Sequence[Estimate]) -> str:
     text += "."
     if not weighing.metric.signed:
         return text
+    return f"{text} {_against_zero(usable)}"
+
+
+def _against_zero(usable: Sequence[Estimate]) -> str:
+    """Whether the intervals exclude an effect of 0, and on which side."""
     above = sum(e.low is not None and e.low > 0 for e in usable)
-    if above == len(usable):
-        agreed = "their intervals all lie above 0" if len(usable) > 1 else "its interval is above 0"
-    elif above == 0:
-        agreed = "none of their intervals lies above 0, so none rules out that there is no effect"
-        if len(usable) == 1:
-            agreed = "its interval does not rule out that there is no effect"
+    below = sum(e.high is not None and e.high < 0 for e in usable)
+    total = len(usable)
+    if above + below == 0:
+        return (
+            "None of their intervals excludes 0."
+            if total > 1
+            else "Its interval does not exclude 0."
+        )
+    if total == 1:
+        text = "Its interval excludes 0"
+    elif above + below == total:
+        text = "Their intervals all exclude 0"
+    elif above + below == 1:
+        text = "One of their intervals excludes 0, the others do not"
     else:
-        agreed = f"{above} of their intervals lie above 0, the others do not"
-        if above == 1:
-            agreed = "one of their intervals lies above 0, the others do not"
-    return f"{text} {agreed[0].upper()}{agreed[1:]}."
+        text = f"{above + below} of their intervals exclude 0, the others do not"
+    if below and above:
+        return f"{text}; {below} of them {'lies' if below == 1 else 'lie'} against the prediction."
+    return f"{text}, against the prediction." if below else f"{text}."
 
 
 def _spread(weighing: Weighing, usable: Sequence[Estimate]) -> list[str]:
@@ -181,7 +194,8 @@ def _spread(weighing: Weighing, usable: Sequence[Estimate]) -> list[str]:
 def _reasons(weighing: Weighing) -> list[str]:
     reasons = []
     if weighing.samples < 10:
-        what = "one sample is" if weighing.samples == 1 else f"{weighing.samples} samples are"
+        noun = "sample" if weighing.samples < weighing.results else "result"
+        what = f"one {noun} is" if weighing.samples == 1 else f"{weighing.samples} {noun}s are"
         reasons.append(f"{what} few for any of these methods")
     if weighing.exact > 0 and weighing.significant == weighing.exact:
         reasons.append(

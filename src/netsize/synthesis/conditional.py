@@ -60,6 +60,11 @@ class Domain:
     low: float
     high: float
 
+    @property
+    def floor(self) -> float:
+        """The lowest effect there is: 0 without a sign, else none."""
+        return 0.0 if self.low == 0 else -np.inf
+
 
 def search_domain(
     estimates: Array, null_variances: Array, *, signed: bool, sides: Sides = "predicted"
@@ -126,8 +131,9 @@ def conditional_likelihood(
     root = np.maximum.accumulate(signed_root(theta))
     limit = float(np.sqrt(chdtri(1, 1 - level)))
     low = _refined(lambda x: signed_root(x) + limit, theta, root + limit)
+    low = max(low, domain.floor)
     high = _refined(lambda x: signed_root(x) - limit, theta, root - limit)
-    distribution = GridDistribution.from_cdf(theta, ndtr(root))
+    distribution = _confidence(theta, np.asarray(ndtr(root)), domain)
     if top > 0 or sides == "either":
         curvature = _curvature(
             lambda x: _log_likelihood(evidence, shares, x, sides),
@@ -164,8 +170,8 @@ def conditional_quantiles(
             cdf - probability,
         )
 
-    low, middle, high = at(tail), at(0.5), at(1 - tail)
-    distribution = GridDistribution.from_cdf(theta, cdf)
+    low, middle, high = max(at(tail), domain.floor), at(0.5), at(1 - tail)
+    distribution = _confidence(theta, cdf, domain)
     if middle > 0:
         return Estimate(
             key=key, label=label, estimate=middle, low=low, high=high, level=level, used=used,
@@ -229,6 +235,17 @@ def _refined(function: Callable[[Array], Array], theta: Array, value: Array) -> 
         theta = np.linspace(theta[place - 1], theta[place], 51)
         value = function(theta)
     return float(np.interp(0.0, value, theta))
+
+
+def _confidence(theta: Array, cdf: Array, domain: Domain) -> GridDistribution:
+    """From a distribution function; what lies below 0 on a scale without a sign is put at 0."""
+    if domain.floor == 0:
+        return GridDistribution(
+            edges=np.append(0.0, theta),
+            mass=np.diff(cdf, prepend=0.0),
+            above=float(1.0 - cdf[-1]),
+        )
+    return GridDistribution.from_cdf(theta, cdf)
 
 
 def _curvature(function: Callable[[Array], Array], at: float, step: float) -> float:

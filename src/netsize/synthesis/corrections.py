@@ -6,7 +6,7 @@ Adding one: write a module whose function returns an `Estimate`, and a line in `
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -117,7 +117,17 @@ def correct_results(
                     reason=str(error),
                 )
             )
-    return tuple(rows)
+    return tuple(rows if results.metric.signed else map(_without_sign, rows))
+
+
+def _without_sign(row: Estimate) -> Estimate:
+    """Mark a negative value where effects have no sign; it is not cut off, which would bias it."""
+    if row.estimate is None or row.estimate >= 0 or row.status != "fine":
+        return row
+    note = "below 0, which stands for no effect on this scale"
+    return replace(
+        row, status="at a boundary", reason="; ".join(x for x in (note, row.reason) if x)
+    )
 
 
 def domain_of(results: Results, sides: Sides = "predicted") -> Domain:
