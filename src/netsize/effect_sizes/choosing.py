@@ -5,13 +5,14 @@ from __future__ import annotations
 from collections import Counter
 from collections.abc import Sequence
 
-from netsize.effect_sizes.forms.base import Form
+from netsize.effect_sizes.forms.base import GIVE_CORRELATION, Form
 from netsize.effect_sizes.metrics import METRICS, Metric
 from netsize.effect_sizes.settings import Settings
 from netsize.errors import EvidenceError
 
 __all__ = ["choose_metric"]
 
+_MOST_ANSWERS = 3
 _WORDS = ("no", "one", "two", "three", "four", "five", "six", "seven", "eight", "nine", "ten")
 
 
@@ -46,23 +47,26 @@ def _reason(form: Form, metric: Metric, settings: Settings) -> str | None:
 
 
 def _question(forms: Sequence[Form], homes: Counter[str], settings: Settings) -> str:
+    """Which scale? One line an answer, the one that keeps most results first."""
     kinds = Counter(f.kind for f in forms)
-    mix = _joined([f"{_number(count)} {kind}" for kind, count in kinds.most_common()])
-    answers = []
-    for name, _ in homes.most_common():
-        out = Counter(
-            reason for f in forms if (reason := _reason(f, METRICS[name], settings)) is not None
-        )
-        use = sum(out.values())
-        text = f"--metric {name} uses {len(forms) - use} of {len(forms)}"
-        if out:
-            text += " (" + "; ".join(out) + ")"
-        answers.append(text)
-    return (
-        f"the results do not share one scale: {mix}. On which should they be pooled? "
-        + "; or ".join(answers)
-        + ". [leave out: REASON] beside a line leaves that one out."
-    )
+    mix = _joined([f"{kind} ({_number(count)})" for kind, count in kinds.most_common()])
+    answers: list[tuple[int, str]] = []
+    for name in homes:
+        refused = Counter(f.kind for f in forms if _reason(f, METRICS[name], settings) is not None)
+        used = len(forms) - sum(refused.values())
+        text = f"--metric {name}: {used} of {len(forms)}"
+        if refused:
+            text += ", without the " + _joined(list(refused))
+        answers.append((used, text))
+    answers.sort(key=lambda answer: -answer[0])
+    lines = [
+        f"the results do not share one scale: {mix}. Which are to be pooled?",
+        *(text for _, text in answers[:_MOST_ANSWERS]),
+    ]
+    if settings.correlation is None and "difference-score" in homes and len(homes) > 1:
+        lines.append(f"Paired results join the others by their correlation; {GIVE_CORRELATION}.")
+    lines.append("[leave out: REASON] beside a line leaves that one out.")
+    return "\n  ".join(lines)
 
 
 def _number(count: int) -> str:

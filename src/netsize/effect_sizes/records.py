@@ -2,11 +2,17 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
-from typing import Literal, TypeAlias
+from typing import TYPE_CHECKING, Any, Literal, TypeAlias
+
+import numpy as np
 
 from netsize.effect_sizes.metrics import Metric
-from netsize.reported.records import LeftOut, ReportedResult
+from netsize.reported.records import LeftOut, ReportedResult, StudyDesign
+
+if TYPE_CHECKING:
+    import pandas as pd
 
 __all__ = ["EffectSize", "EffectTable", "Evidence", "Kernel"]
 
@@ -64,9 +70,11 @@ class EffectSize:
         root is the effect-free standard error of small-study methods.
     low, high, level : exact interval on the metric; ±inf where a side has no finite end.
     p : two-sided p recomputed from the statistic (as printed for p-only results).
-    n : participants. groups : group sizes behind it, (n,) for one group.
-    evidence : the same result for the exact selection model; None for nothing but an estimate.
-    others : further estimates of the same effect, as (name, value): η², ω², ε², unbiased r, ...
+    n : participants, 0 where unknown. groups : group sizes behind it, (n,) for one group.
+    design : what the result was taken to compare; None where neither paper nor statistic tells.
+    evidence : the same result for the exact selection model.
+    others : further estimates of the same effect, as (name, value), names fit for JSON: "d", "g",
+        "r", "r_unbiased", "eta2", "epsilon2", "omega2", "f2" (unbiased), "phi", "w", ...
     assumptions : each assumption behind this row, in words.
     """
 
@@ -83,6 +91,7 @@ class EffectSize:
     n: int
     groups: tuple[int, ...]
     evidence: Evidence
+    design: StudyDesign | None = None
     others: tuple[tuple[str, float], ...] = ()
     assumptions: tuple[str, ...] = ()
 
@@ -94,7 +103,30 @@ class EffectSize:
     @property
     def sample(self) -> str:
         """Name of the set of participants; results that share it are dependent."""
-        return self.result.sample
+        return self.result.sample or self.result.label
+
+    def to_dict(self) -> dict[str, Any]:
+        """Plain JSON types; None for what is unknown or has no finite value."""
+        shown = None if self.estimate is None else float(self.metric.shown(np.array(self.estimate)))
+        return {
+            "label": self.label,
+            "sample": self.sample,
+            "design": self.design,
+            "n": self.n or None,
+            "groups": list(self.groups),
+            "statistic": self.result.text,
+            "printed": _finite(self.printed),
+            "estimate": _finite(self.estimate),
+            "shown": _finite(shown),
+            "variance": _finite(self.variance),
+            "null_variance": _finite(self.null_variance),
+            "low": _finite(self.low),
+            "high": _finite(self.high),
+            "level": self.level,
+            "p": _finite(self.p),
+            "others": {name: _finite(value) for name, value in self.others},
+            "assumptions": list(self.assumptions),
+        }
 
 
 @dataclass(frozen=True, slots=True)
@@ -105,3 +137,38 @@ class EffectTable:
     rows: tuple[EffectSize, ...]
     left_out: tuple[LeftOut, ...] = ()
     notes: tuple[str, ...] = ()
+
+    @property
+    def weights(self) -> tuple[float | None, ...]:
+        """Share of each row in the sum of inverse variances; None for interval evidence."""
+        inverse = [None if row.variance is None else 1 / row.variance for row in self.rows]
+        total = sum(x for x in inverse if x is not None)
+        return tuple(None if x is None else x / total for x in inverse)
+
+    def to_dict(self) -> dict[str, Any]:
+        """Plain JSON types: `metric`, `rows` with their inverse-variance `weight`, the rest."""
+        return {
+            "metric": self.metric.name,
+            "rows": [
+                row.to_dict() | {"weight": weight}
+                for row, weight in zip(self.rows, self.weights, strict=True)
+            ],
+            "left_out": [{"label": x.label, "reason": x.reason} for x in self.left_out],
+            "notes": list(self.notes),
+        }
+
+    def table(self) -> pd.DataFrame:
+        """A data frame, a row a result: the fields of `to_dict`, `others` a column each."""
+        import pandas as pd
+
+        records = []
+        for row in self.to_dict()["rows"]:
+            others = row.pop("others")
+            row["groups"] = " ".join(str(n) for n in row["groups"])
+            row["assumptions"] = "; ".join(row["assumptions"])
+            records.append(row | others)
+        return pd.DataFrame(records)
+
+
+def _finite(value: float | None) -> float | None:
+    return float(value) if value is not None and math.isfinite(value) else None

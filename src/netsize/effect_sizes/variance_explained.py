@@ -8,7 +8,7 @@ from netsize.effect_sizes import estimators
 from netsize.effect_sizes.observed import Observed
 from netsize.effect_sizes.records import EffectSize, Evidence
 from netsize.effect_sizes.settings import Settings
-from netsize.reported.records import ReportedResult
+from netsize.reported.records import ReportedResult, StudyDesign
 
 __all__ = ["f_effect", "signed_root", "signed_root_variance"]
 
@@ -42,6 +42,7 @@ def f_effect(
     scale: float,
     n: int,
     groups: tuple[int, ...],
+    design: StudyDesign | None,
     others: tuple[tuple[str, float], ...] = (),
     assumptions: tuple[str, ...] = (),
 ) -> EffectSize:
@@ -85,6 +86,7 @@ def f_effect(
         p=observed.p,
         n=n,
         groups=groups,
+        design=design,
         evidence=Evidence(
             kernel="f",
             df=(df1, df2),

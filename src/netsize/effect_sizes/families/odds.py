@@ -43,7 +43,7 @@ def from_counts(result: ReportedResult, settings: Settings) -> EstimateForm:
         n=first + second,
         groups=(first, second),
         logistic=True,
-        others=(("log risk ratio", risk), ("phi", _sign(result) * _phi(*cells))),
+        others=(("log_risk_ratio", risk), ("phi", _sign(result) * _phi(*cells))),
         assumptions=tuple(notes),
     )
 
@@ -65,7 +65,7 @@ def from_odds_ratio(result: ReportedResult, settings: Settings) -> EstimateForm:
         n=n,
         groups=result.n if len(result.n) == 2 else (n,) if n else (),
         logistic=True,
-        others=(("odds ratio", result.value),),
+        others=(("odds_ratio", result.value),),
         assumptions=(*notes, f"odds ratio above 1 is the predicted direction{_sign_note(result)}"),
     )
 

@@ -197,6 +197,7 @@ def estimate_effect(
         p=observed.p,
         n=n,
         groups=groups,
+        design=result.design,
         evidence=Evidence(
             kernel="z",
             df=(),

@@ -55,6 +55,7 @@ class FisherForm:
             scale=math.sqrt(self.size),
             n=self.n,
             groups=self.groups,
+            design="paired" if self.within else self.result.design,
             assumptions=(*self.assumptions, *self.observed.assumptions),
         )
 

@@ -128,6 +128,7 @@ class StudentForm:
             p=self.observed.p,
             n=self.n,
             groups=self.groups,
+            design=self.design,
             evidence=self._evidence("t", (m,), scale, self.observed),
             others=tuple(others),
             assumptions=tuple(notes),
@@ -160,7 +161,7 @@ class StudentForm:
             variance = 1 / (pairs - 3) if pairs > 3 else None
             others += [
                 ("r", printed),
-                ("r unbiased", float(estimators.unbiased_correlation(printed, pairs))),
+                ("r_unbiased", float(estimators.unbiased_correlation(printed, pairs))),
             ]
             if variance is None:
                 estimate = None
@@ -178,6 +179,7 @@ class StudentForm:
             p=observed.p,
             n=self.n,
             groups=self.groups,
+            design=self.design,
             evidence=self._evidence("r", (self.df,), 1.0, observed),
             others=tuple(others),
             assumptions=tuple(notes),
@@ -203,6 +205,7 @@ class StudentForm:
             scale=scale,
             n=self.n,
             groups=self.groups,
+            design=self.design,
             others=self.others,
             assumptions=notes,
         )
