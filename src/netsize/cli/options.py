@@ -60,6 +60,9 @@ _OPTIONS: dict[str, Any] = {
     "planning_effect": _option(float, "The effect to plan for, with --rule fixed."),
     "goal": _option(str, "power, assurance, precision or budget. Default power."),
     "half_width": _option(float, "Half-width of the interval wanted, with --goal precision."),
+    "assured": _option(
+        bool, "Keep within the half-width with probability --assurance, not only on average."
+    ),
     "at_most": _option(
         float, "Most participants (or most money, with --cost-per), with --goal budget."
     ),

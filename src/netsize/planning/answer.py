@@ -10,6 +10,7 @@ import numpy as np
 from netsize.numerics.grid import GridDistribution
 from netsize.planning.goals import Sized, size_for
 from netsize.planning.settings import PlanSettings
+from netsize.sizing.search import detectable_effect
 from netsize.sizing.study import Study
 
 __all__ = ["Alternative", "Answer", "answer"]
@@ -49,6 +50,7 @@ class Answer:
     median : of the distribution. low, high : its central interval.
     probability_negligible : posterior probability that there is no effect worth the name.
     sized : the size for the value; not finite where the value is not positive.
+    detectable : the smallest effect that a study of that size finds with the power wanted.
     chance_significant : P(the sized study ends significant in the predicted direction) over the
         whole distribution, the negligible component included; None without a finite size.
     ceiling : what that chance tends to as n grows.
@@ -67,6 +69,7 @@ class Answer:
     high: float
     probability_negligible: float
     sized: Sized
+    detectable: float | None
     chance_significant: float | None
     ceiling: float
     highest_assurance: float
@@ -100,6 +103,8 @@ class Answer:
             },
             "n_per_group": self.sized.to_dict()["n_per_group"],
             "n_total": self.sized.n_total,
+            "n_recruited": self.sized.recruited,
+            "detectable_effect": self.detectable,
         }
 
 
@@ -122,7 +127,6 @@ def answer(
     from_smallest = smallest is not None and smallest > quantile
     value = smallest if from_smallest and smallest is not None else quantile
     sized = size_for(study, settings, inward(np.array([value])))[0]
-    below_zero = float(distribution.cdf(0.0)) if value <= 0 or quantile <= 0 else 0.0
     positive = 1.0 - float(distribution.cdf(0.0))
 
     def chance(x: np.ndarray[Any, Any]) -> np.ndarray[Any, Any]:
@@ -143,6 +147,7 @@ def answer(
         high=float(distribution.quantile(0.975)),
         probability_negligible=sure,
         sized=sized,
+        detectable=_detectable(study, sized, settings, scale),
         chance_significant=(
             sure * no_effect + (1 - sure) * distribution.expectation(chance)
             if sized.n_total is not None
@@ -151,8 +156,8 @@ def answer(
         ceiling=sure * no_effect + (1 - sure) * positive,
         highest_assurance=positive,
         alternatives=(
-            _alternatives(distribution, below_zero, study, settings, scale)
-            if sized.n_total is None and settings.goal != "budget"
+            _alternatives(distribution, positive, study, settings, scale)
+            if sized.n_total is None
             else ()
         ),
     )
@@ -160,17 +165,16 @@ def answer(
 
 def _alternatives(
     distribution: GridDistribution,
-    below_zero: float,
+    positive: float,
     study: Study,
     settings: PlanSettings,
     scale: str,
 ) -> tuple[Alternative, ...]:
     """Sizes at lower assurances, and given that the effect has the predicted direction."""
     inward = study.metric(scale).inward
-    highest = 1 - below_zero
-    assurances = [a for a in _LOWER_ASSURANCES if a < min(highest, settings.assurance)]
+    assurances = [a for a in _LOWER_ASSURANCES if a < min(positive, settings.assurance)]
     found = [(f"assurance {a:.2f}", a, float(distribution.quantile(1 - a))) for a in assurances]
-    if highest > 0.001:
+    if positive > 0.001:
         given = distribution.restrict(0.0, np.inf)
         found.append(
             (
@@ -185,6 +189,13 @@ def _alternatives(
         for (what, a, effect), s in zip(found, sized, strict=True)
         if s.n_total is not None
     )
+
+
+def _detectable(study: Study, sized: Sized, settings: PlanSettings, scale: str) -> float | None:
+    if sized.n_total is None:
+        return None
+    own = detectable_effect(study, sized.units, settings.power)
+    return _plain(float(study.metric(scale).outward(own)))
 
 
 def _plain(value: float) -> float | None:

@@ -8,11 +8,12 @@ from typing import Any
 
 import numpy as np
 
+from netsize.numerics.arrays import Array
 from netsize.planning.answer import Answer
 from netsize.planning.evidence import Literature
 from netsize.planning.goals import power_at, units_within
 from netsize.planning.rows import Row
-from netsize.sizing.misleading import misleading
+from netsize.sizing.aftermath import aftermath
 from netsize.sizing.study import Study
 
 __all__ = ["Consequence", "Habit", "consequences", "habits"]
@@ -73,7 +74,7 @@ def consequences(
         if not np.isfinite(effect) or effect <= 0:
             continue
         at = inward(np.array(effect))
-        errors = misleading(study, naive.units, at) if study.design.law.directional else None
+        after = aftermath(study, naive.units, at)
         out.append(
             Consequence(
                 key=key,
@@ -81,8 +82,8 @@ def consequences(
                 effect=effect,
                 n_total=naive.n_total,
                 power=float(power_at(study, naive.units, at)),
-                sign_error=None if errors is None else float(errors.sign_error),
-                exaggeration=None if errors is None else float(errors.exaggeration),
+                sign_error=_finite(after.sign_error),
+                exaggeration=_finite(after.exaggeration),
             )
         )
     return tuple(out)
@@ -120,3 +121,7 @@ def habits(literature: Literature, answer: Answer, study: Study, scale: str) -> 
             )
         )
     return tuple(out)
+
+
+def _finite(value: Array) -> float | None:
+    return float(value) if np.isfinite(value) else None

@@ -8,9 +8,11 @@ from typing import Any
 import numpy as np
 from numpy.typing import ArrayLike
 
-from netsize.numerics.arrays import Array
+from netsize.errors import SettingError
+from netsize.numerics.arrays import Array, broadcast
 from netsize.planning.settings import PlanSettings
-from netsize.sizing.powering import smallest_units
+from netsize.sizing.precision import units_for_half_width
+from netsize.sizing.search import smallest_units
 from netsize.sizing.study import Study
 
 __all__ = ["Sized", "as_sized", "power_at", "size_for", "units_within"]
@@ -39,17 +41,49 @@ class Sized:
 
 
 def size_for(study: Study, settings: PlanSettings, effect: ArrayLike) -> list[Sized]:
-    """The smallest study for the power wanted at each effect (E,), on the design's own scale.
+    """The smallest study for the goal at each effect (E,), on the design's own scale.
 
-    Effects at or below zero, nan included, have no finite size: a larger study only becomes surer
-    of the wrong direction.
+    For power, effects at or below zero have no finite size: a larger study only becomes surer of
+    the wrong direction. For precision any finite effect has one. A budget buys the same size
+    whatever the effect.
     """
     effect = np.asarray(effect, dtype=float)
-    positive = np.isfinite(effect) & (effect > 0)
+    if settings.goal == "budget":
+        return [as_sized(study, _affordable(study, settings))] * effect.size
+    usable = np.isfinite(effect)
+    if settings.goal == "precision":
+        assurance = settings.assurance if settings.assured else None
+        found, finite = units_for_half_width(
+            study, effect[usable], _half_width(settings), settings.level, assurance
+        )
+    else:
+        usable &= effect > 0
+        found, finite = smallest_units(study, effect[usable], settings.power)
     units = np.zeros(effect.shape, dtype=np.int64)
-    found, finite = smallest_units(study, effect[positive], settings.power)
-    units[positive] = np.where(finite, found, 0)
+    units[usable] = np.where(finite, found, 0)
     return [as_sized(study, int(u)) for u in units]
+
+
+def _half_width(settings: PlanSettings) -> float:
+    if settings.half_width is None:
+        raise SettingError("--half-width", "the goal precision needs the half-width wanted")
+    return settings.half_width
+
+
+def _affordable(study: Study, settings: PlanSettings) -> int:
+    if settings.at_most is None:
+        raise SettingError("--at-most", "the goal budget needs the most that can be spent")
+    participants = settings.at_most
+    if settings.cost_per is not None:
+        participants = (settings.at_most - settings.fixed_cost) / settings.cost_per
+    units = units_within(study, participants, recruited=True)
+    if units == 0:
+        raise SettingError(
+            "--at-most",
+            f"{settings.at_most:g} pays for fewer participants than the smallest study of this "
+            "design has",
+        )
+    return units
 
 
 def as_sized(study: Study, units: int) -> Sized:
@@ -61,11 +95,15 @@ def as_sized(study: Study, units: int) -> Sized:
     return Sized(units=units, n_per_group=groups, n_total=sum(groups), recruited=recruited)
 
 
-def units_within(study: Study, total: float) -> int:
-    """The most units whose groups together stay within `total` participants; 0 if none fit."""
+def units_within(study: Study, total: float, *, recruited: bool = False) -> int:
+    """The most units whose groups together stay within `total` participants; 0 if none fit.
+
+    Participants analysed, or with `recruited` those to recruit for them.
+    """
+    count = study.recruited if recruited else study.groups
 
     def within(units: int) -> bool:
-        return float(study.groups(np.array(float(units))).sum()) <= total
+        return float(count(np.array(float(units))).sum()) <= total
 
     if not within(study.first):
         return 0
@@ -79,13 +117,15 @@ def units_within(study: Study, total: float) -> int:
     return low
 
 
-def power_at(study: Study, units: int, effect: Array) -> Array:
-    """Power of a study of `units` at effects on the design's scale.
+def power_at(study: Study, units: ArrayLike, effect: Array) -> Array:
+    """Power of a study of `units` at effects on the design's scale, broadcast; nan passes through.
 
     Both tails count for an effect in the predicted direction; against it, only a significant
     result in the predicted direction would be called a success.
     """
-    effect = np.asarray(effect, dtype=float)
-    return np.asarray(
-        np.where(effect > 0, study.power(units, effect), study.predicted(units, effect))
-    )
+    units, effect = broadcast(units, effect)
+    known = np.isfinite(units) & np.isfinite(effect)
+    out = np.full(units.shape, np.nan)
+    u, e = units[known], effect[known]
+    out[known] = np.where(e > 0, study.power(u, e), study.predicted(u, e))
+    return out

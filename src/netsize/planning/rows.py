@@ -10,10 +10,13 @@ import numpy as np
 from scipy.special import stdtrit
 
 from netsize.effect_sizes.metrics import Metric
+from netsize.numerics.arrays import Array
 from netsize.planning.answer import Answer
 from netsize.planning.evidence import Literature
 from netsize.planning.goals import Sized, power_at, size_for
 from netsize.planning.settings import PlanSettings
+from netsize.sizing.aftermath import aftermath
+from netsize.sizing.precision import expected_half_width, has_interval
 from netsize.sizing.study import Study
 from netsize.synthesis.records import Estimate
 
@@ -26,6 +29,8 @@ class Row:
 
     effect, low, high : on the shown scale; None where there is no number (not finite included).
     limit : the effect that n is solved for, which differs from `effect` for the goal "assurance".
+    power, half_width, sign_error, exaggeration : of a study of this row's n, were this row's effect
+    true (half-width of its interval on average; None where the design has none).
     power_of_naive_n : power that the as-printed n has at this row's effect; None where the
     as-printed reading has no finite n.
     """
@@ -37,6 +42,10 @@ class Row:
     high: float | None
     limit: float | None
     sized: Sized
+    power: float | None
+    half_width: float | None
+    sign_error: float | None
+    exaggeration: float | None
     power_of_naive_n: float | None
     note: str = ""
 
@@ -50,6 +59,10 @@ class Row:
             "high": self.high,
             "limit": self.limit,
             **self.sized.to_dict(),
+            "power": self.power,
+            "half_width": self.half_width,
+            "sign_error": self.sign_error,
+            "exaggeration": self.exaggeration,
             "power_of_naive_n": self.power_of_naive_n,
             "note": self.note,
         }
@@ -108,8 +121,13 @@ def plan_rows(
     sized = size_for(study, settings, inward(np.array(limits)))
     naive = sized[0].units
     effects = np.array([np.nan if r.effect is None else r.effect for r in readings])
+    own = inward(effects)
+    units = np.array([float(s.units) if s.units else np.nan for s in sized])
     with np.errstate(invalid="ignore"):
-        powers = power_at(study, naive, inward(effects)) if naive else np.full(effects.size, np.nan)
+        powers = power_at(study, naive, own) if naive else np.full(effects.size, np.nan)
+        reached = power_at(study, units, own)
+        after = aftermath(study, units, own)
+        widths = _half_widths(study, units, own, settings)
     return tuple(
         Row(
             key=r.key,
@@ -119,11 +137,23 @@ def plan_rows(
             high=_plain(r.high),
             limit=_plain(limit),
             sized=s,
-            power_of_naive_n=_plain(float(power)),
+            power=_plain(float(reached[i])),
+            half_width=_plain(float(widths[i])),
+            sign_error=_plain(float(after.sign_error[i])),
+            exaggeration=_plain(float(after.exaggeration[i])),
+            power_of_naive_n=_plain(float(powers[i])),
             note=r.note,
         )
-        for r, limit, s, power in zip(readings, limits, sized, powers, strict=True)
+        for i, (r, limit, s) in enumerate(zip(readings, limits, sized, strict=True))
     )
+
+
+def _half_widths(study: Study, units: Array, effect: Array, settings: PlanSettings) -> Array:
+    out = np.full(units.shape, np.nan)
+    known = np.isfinite(units) & np.isfinite(effect)
+    if has_interval(study) and known.any():
+        out[known] = expected_half_width(study, units[known], effect[known], settings.level)
+    return out
 
 
 def _printed(literature: Literature, settings: PlanSettings) -> list[_Reading]:

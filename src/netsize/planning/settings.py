@@ -35,8 +35,10 @@ class PlanSettings:
     smallest_effect : of interest, on the shown scale (d, dz, r, f), or None.
     target : "new-study" sizes for θ ~ N(μ, τ²), "mean" for μ.
     rule : where the planning distribution comes from. planning_effect : for the rule "fixed".
-    goal : "power" and "assurance" solve for n at each row's value or cautious limit; "precision"
-        for `half_width` of the interval; "budget" reports what `at_most` participants can do.
+    goal : "power" solves for n at each row's effect, "assurance" at its lower limit at that
+        assurance; "precision" for the expected `half_width` of the interval, or with `assured` for
+        one kept within it with probability `assurance`; "budget" tells what `at_most`
+        participants can do.
     cost_per, fixed_cost : turn a sum `at_most` into participants.
     metric, correlation : pooling scale and within-pair correlation for the conversion.
     cut_points : two-sided significance levels that part the p-bands.
@@ -58,6 +60,7 @@ class PlanSettings:
     planning_effect: float | None = None
     goal: Goal = "power"
     half_width: float | None = None
+    assured: bool = False
     at_most: float | None = None
     cost_per: float | None = None
     fixed_cost: float = 0.0

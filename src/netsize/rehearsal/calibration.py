@@ -17,7 +17,7 @@ from netsize.effect_sizes.metrics import METRICS
 from netsize.effect_sizes.records import Evidence
 from netsize.numerics.arrays import Array, BoolArray
 from netsize.rehearsal.literatures import Habit, World, simulate
-from netsize.sizing.powering import smallest_units
+from netsize.sizing.search import smallest_units
 from netsize.sizing.study import Study, make_study
 from netsize.synthesis.random_effects import pool_many, quantile
 from netsize.synthesis.selection_averaged import fit_averaged_many
