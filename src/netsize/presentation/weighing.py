@@ -146,24 +146,22 @@ def _against_zero(usable: Sequence[Estimate]) -> str:
     """Whether the intervals exclude an effect of 0, and on which side."""
     above = sum(e.low is not None and e.low > 0 for e in usable)
     below = sum(e.high is not None and e.high < 0 for e in usable)
-    total = len(usable)
-    if above + below == 0:
+    total, excluding = len(usable), above + below
+    side = ""
+    if below:
+        side = " against the prediction" if not above else f" ({below} against the prediction)"
+    if excluding == 0:
         return (
             "None of their intervals excludes 0."
             if total > 1
             else "Its interval does not exclude 0."
         )
     if total == 1:
-        text = "Its interval excludes 0"
-    elif above + below == total:
-        text = "Their intervals all exclude 0"
-    elif above + below == 1:
-        text = "One of their intervals excludes 0, the others do not"
-    else:
-        text = f"{above + below} of their intervals exclude 0, the others do not"
-    if below and above:
-        return f"{text}; {below} of them {'lies' if below == 1 else 'lie'} against the prediction."
-    return f"{text}, against the prediction." if below else f"{text}."
+        return f"Its interval excludes 0{side}."
+    if excluding == total:
+        return f"Their intervals all exclude 0{side}."
+    verb = "excludes" if excluding == 1 else "exclude"
+    return f"{excluding} of their {total} intervals {verb} 0{side}, the others do not."
 
 
 def _spread(weighing: Weighing, usable: Sequence[Estimate]) -> list[str]:
@@ -195,8 +193,10 @@ def _reasons(weighing: Weighing) -> list[str]:
     reasons = []
     if weighing.samples < 10:
         noun = "sample" if weighing.samples < weighing.results else "result"
-        what = f"one {noun} is" if weighing.samples == 1 else f"{weighing.samples} {noun}s are"
-        reasons.append(f"{what} few for any of these methods")
+        if weighing.samples == 1:
+            reasons.append(f"a single {noun} is too little for any of these methods")
+        else:
+            reasons.append(f"{weighing.samples} {noun}s are few for any of these methods")
     if weighing.exact > 0 and weighing.significant == weighing.exact:
         reasons.append(
             "no printed result is non-significant, so how strong the selection was cannot be "
