@@ -7,7 +7,18 @@ from __future__ import annotations
 
 import math
 
-__all__ = ["MISSING", "count", "counts", "effect", "interval", "p_value", "percent", "probability"]
+__all__ = [
+    "MISSING",
+    "count",
+    "counts",
+    "effect",
+    "factor",
+    "interval",
+    "ordinal",
+    "p_value",
+    "percent",
+    "probability",
+]
 
 MISSING = "-"
 
@@ -70,6 +81,18 @@ def counts(values: list[int] | tuple[int, ...] | None) -> str:
     if len(set(values)) == 1:
         return count(values[0])
     return " + ".join(count(v) for v in values)
+
+
+def factor(value: float | None) -> str:
+    """How many times as large: one decimal."""
+    return MISSING if value is None or not math.isfinite(value) else f"{value:,.1f}"
+
+
+def ordinal(number: int) -> str:
+    """20 → "20th"."""
+    endings = {1: "st", 2: "nd", 3: "rd"}
+    ending = "th" if number % 100 in (11, 12, 13) else endings.get(number % 10, "th")
+    return f"{number}{ending}"
 
 
 def _signless_zero(text: str) -> str:

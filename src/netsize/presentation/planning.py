@@ -5,52 +5,17 @@ from __future__ import annotations
 from netsize.planning.answer import Alternative
 from netsize.planning.consequences import Consequence, Habit
 from netsize.planning.plan import Plan
-from netsize.presentation.format import count, counts, effect, interval, percent, probability
-from netsize.presentation.terminal import show_list, show_table, show_text
+from netsize.planning.rows import Row
+from netsize.presentation.format import count, counts, effect, factor, interval, probability
+from netsize.presentation.headline import headline
+from netsize.presentation.terminal import Column, show_list, show_table, show_text
 
-__all__ = ["CAUTION", "headline", "show_plan"]
+__all__ = ["CAUTION", "show_plan"]
 
 CAUTION = (
     "Estimates are no guarantee. Follow the ethics and regulatory rules that apply to you, and "
     "have a qualified statistician review clinical or animal protocols."
 )
-
-
-def headline(plan: Plan) -> str:
-    """The answer in a sentence or two: the n, or that no finite n exists."""
-    answer, symbol = plan.answer, plan.metric.symbol
-    naive = plan.row("as-printed")
-    if not answer.finite:
-        sentence = (
-            f"No finite sample size reaches {percent(plan.settings.power)} power with "
-            f"{percent(answer.assurance)} assurance: the {_ordinal(1 - answer.assurance)} "
-            f"percentile of the planning distribution is {symbol} = {effect(answer.quantile)}, "
-            "not above zero."
-        )
-        if answer.alternatives:
-            best = answer.alternatives[0]
-            sentence += (
-                " The highest assurance with a finite size is "
-                f"{percent(answer.highest_assurance)}; with {best.what}, "
-                f"{count(best.sized.n_total)} participants are needed."
-            )
-        return sentence
-    basis = (
-        "the smallest effect of interest"
-        if answer.from_smallest
-        else f"the {_ordinal(1 - answer.assurance)} percentile of what the evidence supports"
-    )
-    sentence = (
-        f"Plan for {count(answer.sized.n_total)} participants ({_per_group(plan)}): "
-        f"{percent(plan.settings.power)} power at {symbol} = {effect(answer.value)}, {basis}."
-    )
-    if naive.sized.n_total is not None and naive.power_of_naive_n is not None:
-        power = plan.row("planning-value").power_of_naive_n
-        sentence += (
-            f" Taken as printed ({symbol} = {effect(naive.effect)}), the papers would suggest "
-            f"{count(naive.sized.n_total)}, whose power at that value is {percent(power or 0.0)}."
-        )
-    return sentence
 
 
 def show_plan(plan: Plan) -> None:
@@ -67,6 +32,7 @@ def show_plan(plan: Plan) -> None:
             (f"{plan.settings.level:.0%} interval", "right"),
             (f"n per {plan.study.design.group_word}", "right"),
             ("n total", "right"),
+            *_extra_columns(plan),
             ("power of as-printed n", "right"),
         ],
         [
@@ -76,6 +42,7 @@ def show_plan(plan: Plan) -> None:
                 interval(row.low, row.high),
                 counts(row.sized.n_per_group) if row.sized.n_total else _no_size(row.effect),
                 count(row.sized.n_total),
+                *_extra_cells(plan, row),
                 probability(row.power_of_naive_n),
             )
             for row in plan.rows
@@ -97,6 +64,22 @@ def show_plan(plan: Plan) -> None:
     show_text(CAUTION)
 
 
+def _extra_columns(plan: Plan) -> list[Column]:
+    if plan.settings.goal == "precision":
+        return [("power", "right")]
+    if plan.settings.goal == "budget":
+        return [("half-width", "right"), ("exaggeration", "right"), ("wrong sign", "right")]
+    return []
+
+
+def _extra_cells(plan: Plan, row: Row) -> list[str]:
+    if plan.settings.goal == "precision":
+        return [probability(row.power)]
+    if plan.settings.goal == "budget":
+        return [effect(row.half_width), factor(row.exaggeration), probability(row.sign_error)]
+    return []
+
+
 def _evidence(plan: Plan) -> str:
     literature = plan.literature
     k, samples = len(literature.rows), len(literature.samples)
@@ -106,13 +89,6 @@ def _evidence(plan: Plan) -> str:
         f"participants; {literature.significant} significant in the predicted direction; pooled as "
         f"{plan.metric.title} ({plan.metric.symbol})."
     )
-
-
-def _per_group(plan: Plan) -> str:
-    groups = plan.answer.sized.n_per_group or ()
-    if len(groups) == 1:
-        return "one group"
-    return f"{counts(groups)} per {plan.study.design.group_word}"
 
 
 def _no_size(value: float | None) -> str:
@@ -152,7 +128,7 @@ def _consequence(plan: Plan, c: Consequence) -> str:
     if c.exaggeration is None:
         return text
     return (
-        f"{text}; a significant estimate would be {c.exaggeration:.1f} times too large on average "
+        f"{text}; a significant estimate would be {factor(c.exaggeration)} times too large on average "
         f"and have the wrong sign with probability {probability(c.sign_error)}"
     )
 
@@ -162,10 +138,3 @@ def _habit(h: Habit) -> str:
         f"{h.label}, n total {count(h.n_total)}: power {probability(h.power_at_value)} at the "
         f"planning value, {probability(h.power_at_median)} at the median"
     )
-
-
-def _ordinal(probability: float) -> str:
-    whole = round(probability * 100)
-    endings = {1: "st", 2: "nd", 3: "rd"}
-    suffix = "th" if whole % 100 in (11, 12, 13) else endings.get(whole % 10, "th")
-    return f"{whole}{suffix}"
