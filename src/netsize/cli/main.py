@@ -14,7 +14,11 @@ from typing import Annotated
 import typer
 
 import netsize
+from netsize.cli.effects import effects
+from netsize.cli.plan import plan
+from netsize.cli.read import read
 from netsize.cli.sources import sources
+from netsize.cli.weigh import weigh
 from netsize.errors import NetsizeError
 
 __all__ = ["app", "main", "run"]
@@ -47,7 +51,7 @@ def _options(
     """How many participants, net of publication bias: from pasted statistics to n."""
 
 
-for command in (sources,):
+for command in (read, effects, weigh, plan, sources):
     app.command()(command)
 
 

@@ -16,6 +16,12 @@ __all__ = ["plan"]
 def plan(
     source: Source = None,
     skip_unread: SkipUnread = False,
+    sensitivity: Annotated[
+        bool,
+        typer.Option(
+            "--sensitivity", help="Add how the answer moves with priors, assumptions and samples."
+        ),
+    ] = False,
     as_json: Annotated[bool, typer.Option("--json", help="Print JSON for programs.")] = False,
     choices: dict[str, Any] | None = None,
 ) -> None:
@@ -26,10 +32,18 @@ def plan(
     """
     import netsize
     from netsize.cli.source import load
-    from netsize.presentation.planning import show_plan
+    from netsize.planning import leave_one_out
+    from netsize.planning import sensitivity as vary
+    from netsize.presentation.planning import show_plan, show_variations
 
     made = netsize.plan(load(source), skip_unread=skip_unread, **(choices or {}))
+    variations = (*vary(made), *leave_one_out(made)) if sensitivity else ()
     if as_json:
-        typer.echo(json.dumps(made.to_dict(), ensure_ascii=False, allow_nan=False))
-    else:
-        show_plan(made)
+        record = made.to_dict()
+        if sensitivity:
+            record["sensitivity"] = [v.to_dict() for v in variations]
+        typer.echo(json.dumps(record, ensure_ascii=False, allow_nan=False))
+        return
+    show_plan(made)
+    if sensitivity:
+        show_variations(made, variations)

@@ -5,16 +5,18 @@ All on the metric; the plan turns it to the shown scale afterwards.
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import numpy as np
 from scipy.special import stdtr
 
+from netsize.effect_sizes.curves import band_probabilities
 from netsize.effect_sizes.metrics import Metric
 from netsize.effect_sizes.records import EffectSize
 from netsize.errors import EvidenceError
 from netsize.numerics.grid import GridDistribution
 from netsize.planning.evidence import Literature
 from netsize.planning.settings import PlanSettings
-from netsize.synthesis.random_effects import Pooled
 from netsize.synthesis.selection_single import conditional_bound
 
 __all__ = ["planning_distribution"]
@@ -38,7 +40,7 @@ def planning_distribution(
         value = metric.pooled(np.array([settings.planning_effect]))[0]
         return GridDistribution.at(float(value)), "the effect given with --planning-effect"
     if settings.rule == "pooled-limit":
-        return _of_pooled(literature.pooled), "the pooled mean, without correction"
+        return _of_pooled(literature), "the pooled mean, without correction"
     if settings.rule == "single-study":
         row = _largest_significant(literature)
         return _of_single(row, metric), f"{row.label} alone, given that it is significant"
@@ -49,11 +51,20 @@ def planning_distribution(
     return fit.new_study, f"a new study's effect under {reading}"
 
 
-def _of_pooled(pooled: Pooled | None) -> GridDistribution:
+def _of_pooled(literature: Literature) -> GridDistribution:
+    """Confidence distribution of the pooled mean; the exact one of the result where it is alone."""
+    pooled = literature.pooled
     if pooled is None:
         raise EvidenceError(
             "the rule pooled-limit needs results with a point estimate; inequalities have none"
         )
+    first = literature.rows[0].evidence
+    if len(literature.rows) == 1 and first.low == first.high:
+        reach = 12 * pooled.se
+        low = pooled.mean - reach if literature.table.metric.signed else 0.0
+        points = np.linspace(low, pooled.mean + reach, _CELLS)
+        beyond = replace(first, cuts=(first.low,))
+        return GridDistribution.from_cdf(points, band_probabilities([beyond], points)[0, 0])
     reach = 12 * pooled.se
     points = np.linspace(pooled.mean - reach, pooled.mean + reach, _CELLS)
     df = pooled.df if np.isfinite(pooled.df) else 1e9

@@ -2,15 +2,18 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 from netsize.planning.answer import Alternative
 from netsize.planning.consequences import Consequence, Habit
 from netsize.planning.plan import Plan
 from netsize.planning.rows import Row
+from netsize.planning.sensitivity import Variation
 from netsize.presentation.format import count, counts, effect, factor, interval, probability
 from netsize.presentation.headline import headline
 from netsize.presentation.terminal import Column, show_list, show_table, show_text
 
-__all__ = ["CAUTION", "show_plan"]
+__all__ = ["CAUTION", "show_plan", "show_variations"]
 
 CAUTION = (
     "Estimates are no guarantee. Follow the ethics and regulatory rules that apply to you, and "
@@ -54,7 +57,8 @@ def show_plan(plan: Plan) -> None:
     if plan.answer.alternatives:
         show_list("Sizes that exist:", [_alternative(plan, a) for a in plan.answer.alternatives])
         show_text(
-            "Or name a smallest effect of interest (--smallest-effect), or plan interim looks."
+            "Or name a smallest effect of interest (--smallest-effect), or consider a design with "
+            "interim looks."
         )
     show_list("If the as-printed n were used:", [_consequence(plan, c) for c in plan.consequences])
     show_list("Common habits, for contrast:", [_habit(h) for h in plan.habits])
@@ -62,6 +66,31 @@ def show_plan(plan: Plan) -> None:
     show_list("Warnings:", list(plan.warnings))
     show_list("Assumed:", list(plan.assumptions))
     show_text(CAUTION)
+
+
+def show_variations(plan: Plan, variations: Sequence[Variation]) -> None:
+    """Print how the answer moves, a changed choice or a missing sample a row."""
+    symbol = plan.metric.symbol
+    show_text("How the answer moves:")
+    show_table(
+        [
+            ("changed", "left"),
+            (f"planning {symbol}", "right"),
+            (f"median {symbol}", "right"),
+            ("P(negligible)", "right"),
+            ("n total", "right"),
+        ],
+        [
+            (
+                v.label,
+                effect(v.value),
+                effect(v.median),
+                probability(v.probability_negligible),
+                count(v.sized.n_total) if v.sized.n_total else "none",
+            )
+            for v in variations
+        ],
+    )
 
 
 def _extra_columns(plan: Plan) -> list[Column]:
@@ -128,8 +157,8 @@ def _consequence(plan: Plan, c: Consequence) -> str:
     if c.exaggeration is None:
         return text
     return (
-        f"{text}; a significant estimate would be {factor(c.exaggeration)} times too large on average "
-        f"and have the wrong sign with probability {probability(c.sign_error)}"
+        f"{text}; a significant estimate would be {factor(c.exaggeration)} times too large on "
+        f"average and have the wrong sign with probability {probability(c.sign_error)}"
     )
 
 
