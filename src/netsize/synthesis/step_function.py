@@ -230,25 +230,29 @@ def _search(
     plain = float((w * model.y).sum() / w.sum())
     z = (model.y - plain) / eta
     unselected = float(model.shares @ (0.5 * z * z + np.log(eta) + 0.5 * np.log(2 * np.pi)))
-    best: tuple[Array, float, Array] | None = None
-    for mu, spread, log_weight in (
-        (plain, tau2, 0.0),
-        (0.5 * plain, tau2, -1.0),
-        (0.0, 0.25 * tau2, -2.0),
-        (plain, tau2, 1.0),
-    ):
-        fit = minimize(
-            model.loss,
-            np.array([mu, spread, *[log_weight] * model.free.size]),
-            jac=True,
-            bounds=bounds,
-            method="L-BFGS-B",
-            options={"maxiter": 500, "ftol": 1e-15, "gtol": 1e-9},
-        )
-        if best is None or fit.fun < best[1]:
-            best = fit.x, float(fit.fun), np.asarray(fit.jac)
-    assert best is not None
-    return *best, unselected
+    starts = ((plain, tau2, 0.0), (0.5 * plain, tau2, -1.0), (0.0, 0.25 * tau2, -2.0))
+    rough = [
+        _descend(model, bounds, np.array([mu, spread, *[log_w] * model.free.size]), precision=1e-7)
+        for mu, spread, log_w in starts
+    ]
+    best = min(rough, key=lambda end: end[1])
+    final = _descend(model, bounds, best[0], precision=1e-15)
+    return *min(best, final, key=lambda end: end[1]), unselected
+
+
+def _descend(
+    model: _Model, bounds: list[tuple[float, float]], start: Array, *, precision: float
+) -> tuple[Array, float, Array]:
+    """Parameters, loss and gradient where a quasi-Newton search stops."""
+    fit = minimize(
+        model.loss,
+        start,
+        jac=True,
+        bounds=bounds,
+        method="L-BFGS-B",
+        options={"maxiter": 500, "ftol": precision, "gtol": 1e-9},
+    )
+    return fit.x, float(fit.fun), np.asarray(fit.jac)
 
 
 def _standard_error(model: _Model, at: Array, bounds: list[tuple[float, float]]) -> float:
