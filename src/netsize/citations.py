@@ -32,4 +32,197 @@ _SOURCES = (
         "related estimators. Journal of Educational Statistics, 6, 107-128.",
         "Hedges' g: the exact small-sample factor J(m).",
     ),
+    Source(
+        "DerSimonian & Laird 1986",
+        "DerSimonian, R., & Laird, N. (1986). Meta-analysis in clinical trials. Controlled "
+        "Clinical Trials, 7, 177-188.",
+        "Moment estimator of between-study variance.",
+    ),
+    Source(
+        "Paule & Mandel 1982",
+        "Paule, R. C., & Mandel, J. (1982). Consensus values and weighting factors. Journal "
+        "of Research of the National Bureau of Standards, 87, 377-385.",
+        "Between-study variance from the generalised Q.",
+    ),
+    Source(
+        "Raudenbush 2009",
+        "Raudenbush, S. W. (2009). Analyzing effect sizes: Random-effects models. In H. "
+        "Cooper, L. V. Hedges & J. C. Valentine (Eds.), The handbook of research synthesis "
+        "and meta-analysis (2nd ed., pp. 295-315). Russell Sage Foundation.",
+        "Likelihood and restricted likelihood for the random-effects model.",
+    ),
+    Source(
+        "Sidik & Jonkman 2005",
+        "Sidik, K., & Jonkman, J. N. (2005). Simple heterogeneity variance estimation for "
+        "meta-analysis. Journal of the Royal Statistical Society, Series C, 54, 367-384.",
+        "Between-study variance from variance ratios.",
+    ),
+    Source(
+        "Hedges & Olkin 1985",
+        "Hedges, L. V., & Olkin, I. (1985). Statistical methods for meta-analysis. Academic Press.",
+        "Unweighted moment estimator of between-study variance.",
+    ),
+    Source(
+        "Viechtbauer 2007",
+        "Viechtbauer, W. (2007). Confidence intervals for the amount of heterogeneity in "
+        "meta-analysis. Statistics in Medicine, 26, 37-52.",
+        "Q-profile interval of the between-study variance.",
+    ),
+    Source(
+        "Hartung & Knapp 2001",
+        "Hartung, J., & Knapp, G. (2001). A refined method for the meta-analysis of "
+        "controlled clinical trials with binary outcome. Statistics in Medicine, 20, "
+        "3875-3889.",
+        "t interval of the random-effects mean.",
+    ),
+    Source(
+        "Sidik & Jonkman 2002",
+        "Sidik, K., & Jonkman, J. N. (2002). A simple confidence interval for meta-analysis. "
+        "Statistics in Medicine, 21, 3153-3159.",
+        "t interval of the random-effects mean.",
+    ),
+    Source(
+        "Higgins & Thompson 2002",
+        "Higgins, J. P. T., & Thompson, S. G. (2002). Quantifying heterogeneity in a meta-"
+        "analysis. Statistics in Medicine, 21, 1539-1558.",
+        "I² and H².",
+    ),
+    Source(
+        "Higgins et al. 2009",
+        "Higgins, J. P. T., Thompson, S. G., & Spiegelhalter, D. J. (2009). A re-evaluation "
+        "of random-effects meta-analysis. Journal of the Royal Statistical Society, Series A,"
+        " 172, 137-159.",
+        "Prediction interval for the effect of a new study.",
+    ),
+    Source(
+        "Borenstein et al. 2009",
+        "Borenstein, M., Hedges, L. V., Higgins, J. P. T., & Rothstein, H. R. (2009). "
+        "Introduction to meta-analysis. Wiley.",
+        "Composites of several results from one sample.",
+    ),
+    Source(
+        "Liang & Zeger 1986",
+        "Liang, K.-Y., & Zeger, S. L. (1986). Longitudinal data analysis using generalized "
+        "linear models. Biometrika, 73, 13-22.",
+        "Errors clustered by sample.",
+    ),
+    Source(
+        "Stanley & Doucouliagos 2014",
+        "Stanley, T. D., & Doucouliagos, H. (2014). Meta-regression approximations to reduce "
+        "publication selection bias. Research Synthesis Methods, 5, 60-78.",
+        "PET, PEESE and the rule that chooses between them.",
+    ),
+    Source(
+        "Stanley 2017",
+        "Stanley, T. D. (2017). Limitations of PET-PEESE and other meta-analysis methods. "
+        "Social Psychological and Personality Science, 8, 581-591.",
+        "When regressions on precision mislead.",
+    ),
+    Source(
+        "Pustejovsky & Rodgers 2019",
+        "Pustejovsky, J. E., & Rodgers, M. A. (2019). Testing for funnel plot asymmetry of "
+        "standardized mean differences. Research Synthesis Methods, 10, 57-71.",
+        "Effect-free standard errors in small-study methods.",
+    ),
+    Source(
+        "Duval & Tweedie 2000a",
+        'Duval, S., & Tweedie, R. (2000). A nonparametric "trim and fill" method of '
+        "accounting for publication bias in meta-analysis. Journal of the American "
+        "Statistical Association, 95, 89-98.",
+        "Trim and fill: estimators L0 and R0.",
+    ),
+    Source(
+        "Duval & Tweedie 2000b",
+        "Duval, S., & Tweedie, R. (2000). Trim and fill: A simple funnel-plot-based method of"
+        " testing and adjusting for publication bias in meta-analysis. Biometrics, 56, "
+        "455-463.",
+        "Trim and fill: the algorithm.",
+    ),
+    Source(
+        "Stanley et al. 2017",
+        "Stanley, T. D., Doucouliagos, H., & Ioannidis, J. P. A. (2017). Finding the power to"
+        " reduce publication bias. Statistics in Medicine, 36, 1580-1598.",
+        "Unrestricted weighted least squares; its adequately powered subset.",
+    ),
+    Source(
+        "Hedges 1992",
+        "Hedges, L. V. (1992). Modeling publication selection effects in meta-analysis. "
+        "Statistical Science, 7, 246-255.",
+        "Step-function selection model.",
+    ),
+    Source(
+        "Vevea & Hedges 1995",
+        "Vevea, J. L., & Hedges, L. V. (1995). A general linear model for estimating effect "
+        "size in the presence of publication bias. Psychometrika, 60, 419-435.",
+        "Step-function selection model by maximum likelihood and its likelihood-ratio test.",
+    ),
+    Source(
+        "Rücker et al. 2011",
+        "Rücker, G., Schwarzer, G., Carpenter, J. R., Binder, H., & Schumacher, M. (2011). "
+        "Treatment-effect estimates adjusted for small-study effects via a limit meta-"
+        "analysis. Biostatistics, 12, 122-142.",
+        "Limit meta-analysis.",
+    ),
+    Source(
+        "Hedges 1984",
+        "Hedges, L. V. (1984). Estimation of effect size under nonrandom sampling: The "
+        "effects of censoring studies yielding statistically insignificant mean differences. "
+        "Journal of Educational Statistics, 9, 61-85.",
+        "Likelihood conditional on significance.",
+    ),
+    Source(
+        "Simonsohn et al. 2014",
+        "Simonsohn, U., Nelson, L. D., & Simmons, J. P. (2014). P-curve: A key to the file-"
+        "drawer. Journal of Experimental Psychology: General, 143, 534-547.",
+        "Right skew and flatness of significant p-values.",
+    ),
+    Source(
+        "van Assen et al. 2015",
+        "van Assen, M. A. L. M., van Aert, R. C. M., & Wicherts, J. M. (2015). Meta-analysis "
+        "using effect size distributions of only statistically significant studies. "
+        "Psychological Methods, 20, 293-309.",
+        "Uniform conditional p-values; estimates against the prediction shown as 0.",
+    ),
+    Source(
+        "Egger et al. 1997",
+        "Egger, M., Davey Smith, G., Schneider, M., & Minder, C. (1997). Bias in meta-"
+        "analysis detected by a simple, graphical test. BMJ, 315, 629-634.",
+        "Regression test of asymmetry.",
+    ),
+    Source(
+        "Begg & Mazumdar 1994",
+        "Begg, C. B., & Mazumdar, M. (1994). Operating characteristics of a rank correlation "
+        "test for publication bias. Biometrics, 50, 1088-1101.",
+        "Rank test of asymmetry.",
+    ),
+    Source(
+        "Kendall 1970",
+        "Kendall, M. G. (1970). Rank correlation methods (4th ed.). Griffin.",
+        "Variance of the rank correlation with ties.",
+    ),
+    Source(
+        "Sterne et al. 2000",
+        "Sterne, J. A. C., Gavaghan, D., & Egger, M. (2000). Publication and related bias in "
+        "meta-analysis: Power of statistical tests and prevalence in the literature. Journal "
+        "of Clinical Epidemiology, 53, 1119-1129.",
+        "What tests of asymmetry can show at a given number of results.",
+    ),
+    Source(
+        "Sterne et al. 2011",
+        "Sterne, J. A. C., Sutton, A. J., Ioannidis, J. P. A., et al. (2011). Recommendations"
+        " for examining and interpreting funnel plot asymmetry in meta-analyses of randomised"
+        " controlled trials. BMJ, 343, d4002.",
+        "Ten results as the least for tests of asymmetry.",
+    ),
+    Source(
+        "Ioannidis & Trikalinos 2007",
+        "Ioannidis, J. P. A., & Trikalinos, T. A. (2007). An exploratory test for an excess "
+        "of significant findings. Clinical Trials, 4, 245-253.",
+        "Excess of significant results.",
+    ),
+    Source(
+        "Belsley et al. 1980",
+        "Belsley, D. A., Kuh, E., & Welsch, R. E. (1980). Regression diagnostics. Wiley.",
+        "Shift of the mean when one sample is left out.",
+    ),
 )
