@@ -23,12 +23,14 @@ from dataclasses import dataclass, replace
 from typing import Literal, TypeAlias
 
 import numpy as np
+from scipy.interpolate import CubicSpline
 from scipy.special import chdtri, comb, gammaln, ndtr
 
 from netsize.effect_sizes import curves
 from netsize.effect_sizes.records import Evidence
-from netsize.numerics.arrays import Array
+from netsize.numerics.arrays import Array, BoolArray
 from netsize.numerics.grid import GridDistribution
+from netsize.numerics.roots import increasing_root
 from netsize.synthesis.confidence import unusable
 from netsize.synthesis.records import Estimate
 
@@ -49,7 +51,9 @@ Sides: TypeAlias = Literal["predicted", "either"]
 # library's noncentral tails lose their relative accuracy.
 _AGAINST = 5.0
 _BEYOND = 8.0
-_POINTS = 161
+_COARSE, _FINE = 101, 401
+_DEPTH = 25.0  # log-likelihood below the maximum at which nothing is left to see
+_NOTHING = 1e-12
 _EXACT_SUM = 16  # terms up to which the Irwin-Hall sum keeps ten digits
 
 
@@ -86,19 +90,7 @@ def likelihood_maximum(
     evidence: Sequence[Evidence], shares: Array, domain: Domain, *, sides: Sides
 ) -> tuple[float, float]:
     """The θ in the domain with the highest conditional likelihood, and log L there."""
-
-    def function(theta: Array) -> Array:
-        return _log_likelihood(evidence, shares, theta, sides)
-
-    low, high = domain.low, domain.high
-    theta, value = np.array([low]), np.array([0.0])
-    while high - low > 1e-9 * (domain.high - domain.low):
-        theta = np.linspace(low, high, _POINTS)
-        value = function(theta)
-        best = int(np.nanargmax(value))
-        low, high = theta[max(best - 1, 0)], theta[min(best + 1, _POINTS - 1)]
-    best = int(np.nanargmax(value))
-    return float(theta[best]), float(value[best])
+    return _highest(_likelihood_curve(evidence, shares, domain, sides))
 
 
 def conditional_likelihood(
@@ -121,26 +113,22 @@ def conditional_likelihood(
     used = len(evidence)
     if used == 0:
         return unusable(key, label, level=level, used=0, reason="no exact significant result")
-    top, highest = likelihood_maximum(evidence, shares, domain, sides=sides)
-    theta = np.unique(np.append(np.linspace(domain.low, domain.high, 5 * _POINTS), top))
+    curve = _likelihood_curve(evidence, shares, domain, sides)
+    top, highest = _highest(curve)
 
     def signed_root(theta: Array) -> Array:
-        drop = 2 * np.maximum(highest - _log_likelihood(evidence, shares, theta, sides), 0.0)
+        drop = 2 * np.maximum(highest - curve(theta), 0.0)
         return np.asarray(np.sign(theta - top) * np.sqrt(drop))
 
+    theta = np.unique(np.append(curve.x, top))
     root = np.maximum.accumulate(signed_root(theta))
     limit = float(np.sqrt(chdtri(1, 1 - level)))
-    low = _refined(lambda x: signed_root(x) + limit, theta, root + limit)
+    low = _zero(lambda x: signed_root(x) + limit, theta, root + limit)
+    high = _zero(lambda x: signed_root(x) - limit, theta, root - limit)
     low = max(low, domain.floor)
-    high = _refined(lambda x: signed_root(x) - limit, theta, root - limit)
     distribution = _confidence(theta, np.asarray(ndtr(root)), domain)
     if top > 0 or sides == "either":
-        curvature = _curvature(
-            lambda x: _log_likelihood(evidence, shares, x, sides),
-            top,
-            (domain.high - domain.low) / 4000,
-        )
-        se = float(1 / np.sqrt(curvature))
+        se = float(1 / np.sqrt(-curve(top, 2)))
         return Estimate(
             key=key, label=label, estimate=top, se=se, low=low, high=high, level=level, used=used,
             reason=_caveat(used), distribution=distribution,
@@ -159,19 +147,22 @@ def conditional_quantiles(
     key, label, used = "conditional-quantiles", "Uniform conditional p-values", len(evidence)
     if used == 0:
         return unusable(key, label, level=level, used=0, reason="no exact significant result")
-    theta = np.linspace(domain.low, domain.high, 5 * _POINTS)
-    cdf = np.maximum.accumulate(irwin_hall(tail_shares(evidence, theta).sum(axis=0), terms=used))
+
+    def cdf(theta: Array) -> Array:
+        return irwin_hall(np.clip(curve(theta), 0.0, used), terms=used)
+
+    theta = np.linspace(domain.low, domain.high, _COARSE)
+    law = irwin_hall(tail_shares(evidence, theta).sum(axis=0), terms=used)
+    theta = _around(theta, (law > _NOTHING) & (law < 1 - _NOTHING))
+    curve = CubicSpline(theta, tail_shares(evidence, theta).sum(axis=0))
+    law = np.maximum.accumulate(cdf(theta))
     tail = (1 - level) / 2
 
     def at(probability: float) -> float:
-        return _refined(
-            lambda x: irwin_hall(tail_shares(evidence, x).sum(axis=0), terms=used) - probability,
-            theta,
-            cdf - probability,
-        )
+        return _zero(lambda x: cdf(x) - probability, theta, law - probability)
 
     low, middle, high = max(at(tail), domain.floor), at(0.5), at(1 - tail)
-    distribution = _confidence(theta, cdf, domain)
+    distribution = _confidence(theta, law, domain)
     if middle > 0:
         return Estimate(
             key=key, label=label, estimate=middle, low=low, high=high, level=level, used=used,
@@ -224,17 +215,42 @@ def _cut_at(e: Evidence, cuts: tuple[float, ...]) -> Evidence:
     return replace(e, cuts=cuts, band=None)
 
 
-def _refined(function: Callable[[Array], Array], theta: Array, value: Array) -> float:
-    """Zero of an increasing function tabulated on a grid, by finer grids; ±inf outside."""
+def _likelihood_curve(
+    evidence: Sequence[Evidence], shares: Array, domain: Domain, sides: Sides
+) -> CubicSpline:
+    """log L(θ) where it is within `_DEPTH` of its maximum: a coarse look, then a fine spline."""
+    theta = np.linspace(domain.low, domain.high, _COARSE)
+    value = _log_likelihood(evidence, shares, theta, sides)
+    theta = _around(theta, value > value.max() - _DEPTH)
+    value = _log_likelihood(evidence, shares, theta, sides)
+    kept = value > value.max() - 4 * _DEPTH
+    return CubicSpline(theta[kept], value[kept])
+
+
+def _around(theta: Array, wanted: BoolArray) -> Array:
+    """A fine grid over the wanted part of a coarse one and one step beyond on either side."""
+    places = np.flatnonzero(wanted)
+    if not places.size:  # all of it falls between two points
+        return np.linspace(theta[0], theta[-1], 5 * _FINE)
+    low, high = max(int(places[0]) - 1, 0), min(int(places[-1]) + 1, theta.size - 1)
+    return np.linspace(theta[low], theta[high], _FINE)
+
+
+def _highest(curve: CubicSpline) -> tuple[float, float]:
+    candidates = np.append(curve.derivative().roots(extrapolate=False), curve.x[[0, -1]])
+    values = curve(candidates)
+    best = int(np.argmax(values))
+    return float(candidates[best]), float(values[best])
+
+
+def _zero(function: Callable[[Array], Array], theta: Array, value: Array) -> float:
+    """Zero of an increasing function tabulated on a grid; ±inf where it lies outside."""
     if value[0] > 0:
         return -np.inf
     if value[-1] < 0:
         return np.inf
-    for _ in range(3):
-        place = int(np.clip(np.searchsorted(value, 0.0), 1, theta.size - 1))
-        theta = np.linspace(theta[place - 1], theta[place], 51)
-        value = function(theta)
-    return float(np.interp(0.0, value, theta))
+    place = int(np.clip(np.searchsorted(value, 0.0), 1, theta.size - 1))
+    return float(increasing_root(function, theta[place - 1], theta[place]))
 
 
 def _confidence(theta: Array, cdf: Array, domain: Domain) -> GridDistribution:
@@ -246,11 +262,6 @@ def _confidence(theta: Array, cdf: Array, domain: Domain) -> GridDistribution:
             above=float(1.0 - cdf[-1]),
         )
     return GridDistribution.from_cdf(theta, cdf)
-
-
-def _curvature(function: Callable[[Array], Array], at: float, step: float) -> float:
-    below, middle, above = function(np.array([at - step, at, at + step]))
-    return float((2 * middle - below - above) / step**2)
 
 
 def _caveat(used: int) -> str:
