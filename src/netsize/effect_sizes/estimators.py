@@ -4,10 +4,11 @@ from __future__ import annotations
 
 import numpy as np
 from numpy.typing import ArrayLike
-from scipy.special import hyp2f1
+from scipy.special import ellipkm1
 
 from netsize.numerics.arrays import Array, broadcast
 from netsize.numerics.gamma import log_half_step
+from netsize.numerics.hypergeometric import half_half
 
 __all__ = [
     "epsilon_squared",
@@ -78,14 +79,23 @@ def unbiased_correlation(r: ArrayLike, n: ArrayLike) -> Array:
     Notes
     -----
     Olkin and Pratt write (n-1)/2 with n the degrees of freedom of the covariance matrix, one less
-    than the pairs counted here. At n = 3 the only unbiased estimate is the sign of r.
+    than the pairs counted here. At n = 3 the estimate is the sign of r, at n = 4 (2/π) r K(1-r²)
+    with the complete elliptic integral K, at n = 5 r arccos|r|/√(1-r²).
     """
     r, n = broadcast(r, n)
     valid = (np.abs(r) <= 1) & (n >= 3)
-    ample = valid & (n > 3) & (r != 0)
+    size = np.abs(r)
     with np.errstate(all="ignore"):
-        value = r * hyp2f1(0.5, 0.5, (np.where(ample, n, 4.0) - 2) / 2, 1 - r * r)
-    return np.where(ample, value, np.where(valid, np.sign(r), np.nan))
+        # with 4 and 5 pairs 1 - r² has lost the digits of a small r; these forms have not
+        few = np.where(
+            n == 4,
+            2 / np.pi * r * ellipkm1(r * r),
+            r * np.arccos(size) / np.sqrt((1 - size) * (1 + size)),
+        )
+        few = np.where(size == 1, r, np.where(r == 0, 0.0, few))
+        many = r * half_half((np.where(valid & (n > 5), n, 6.0) - 2) / 2, (1 - size) * (1 + size))
+    value = np.where(n == 3, np.sign(r), np.where((n == 4) | (n == 5), few, many))
+    return np.where(valid, value, np.nan)
 
 
 def unbiased_noncentrality(f: ArrayLike, df1: ArrayLike, df2: ArrayLike) -> Array:

@@ -14,10 +14,10 @@ from __future__ import annotations
 import numpy as np
 from numpy.polynomial.legendre import leggauss
 from numpy.typing import ArrayLike
-from scipy.special import hyp2f1
 
 from netsize.numerics.arrays import Array, broadcast
 from netsize.numerics.gamma import log_half_step
+from netsize.numerics.hypergeometric import half_half
 from netsize.numerics.roots import increasing_root
 
 __all__ = ["coefficient", "log_density", "lower_tail", "upper_tail"]
@@ -25,7 +25,6 @@ __all__ = ["coefficient", "log_density", "lower_tail", "upper_tail"]
 _DEPTH = 40.0  # exponents below the start of a tail at which it is cut: e^-40 < 1e-17
 _NODES, _WEIGHTS = leggauss(48)
 _BLOCK = 2048  # elements integrated at a time, so that the nodes stay within the cache
-_SERIES_FROM = 12.0  # third parameter from which the series of ₂F₁ is short
 
 
 def log_density(r: ArrayLike, rho: ArrayLike, n: ArrayLike) -> Array:
@@ -57,7 +56,7 @@ def log_density(r: ArrayLike, rho: ArrayLike, n: ArrayLike) -> Array:
             - 0.5 * np.log(rest_rho)
             - 2 * np.log(rest_r)
             + 1.5 * np.log((1 - np.abs(r)) + np.abs(r) * (1 - np.sign(r) * rho))  # 1 - ρr
-            + np.log(_hypergeometric(n - 0.5, (1 + rho * r) / 2))
+            + np.log(half_half(n - 0.5, (1 + rho * r) / 2))
         )
         value = np.where(np.abs(rho) == 1, -np.inf, value)
     return np.where(valid, value, np.nan)
@@ -106,25 +105,6 @@ def _log_constant(n: Array) -> Array:
     return np.asarray(np.log(n - 2) - 0.5 * np.log(2 * np.pi) - log_half_step(n - 1))
 
 
-def _hypergeometric(c: Array, x: Array) -> Array:
-    """₂F₁(½, ½; c; x), c ≥ 2.5, 0 ≤ x ≤ 1; by its own series where that is short and faster."""
-    c, x = broadcast(c, x)
-    smallest = float(np.min(c, initial=np.inf, where=c >= _SERIES_FROM))
-    factors: list[float] = []
-    term = 1.0
-    while term > 1e-17 and np.isfinite(smallest):
-        k = len(factors)
-        factors.append((k + 0.5) ** 2 / (k + 1))
-        term *= factors[-1] / (smallest + k)
-    total = np.ones_like(x)
-    for k in reversed(range(len(factors))):
-        total = 1 + factors[k] * x / (c + k) * total
-    small = c < _SERIES_FROM
-    if small.any():
-        total = np.where(small, hyp2f1(0.5, 0.5, np.where(small, c, _SERIES_FROM), x), total)
-    return total
-
-
 def _lower_tail(z: Array, theta: Array, n: Array) -> Array:
     """P(artanh R ≤ z; θ, n) with everything on Fisher's scale."""
     z, theta, n = broadcast(z, theta, n)
@@ -158,7 +138,7 @@ def _tail_block(z: Array, theta: Array, n: Array) -> Array:
     # log sin c alone would be off by n times the rounding of a number near 1
     log_sine = np.where(c > 0.8, 0.5 * np.log1p(-cosine * cosine), np.log(np.sin(c)))
     height = np.exp((n[:, None] - 3) * log_sine) * np.sqrt(lean)
-    height *= _hypergeometric(n[:, None] - 0.5, x)
+    height *= half_half(n[:, None] - 0.5, x)
     tail = np.exp(_log_constant(n)) * half * (height @ _WEIGHTS)
     tail = np.clip(tail, 0.0, 1.0)
     return np.asarray(np.where(flip, 1 - tail, tail))
