@@ -17,7 +17,7 @@ from netsize.reported.records import LeftOut, Reading, ReportedResult
 from netsize.synthesis.random_effects import Pooled, pool
 from netsize.synthesis.results import from_table
 from netsize.synthesis.selection import dependence_weights
-from netsize.synthesis.selection_averaged import AveragedFit, fit_averaged
+from netsize.synthesis.selection_averaged import AveragedFit, fit_averaged, log_evidence
 from netsize.synthesis.selection_profile import ProfileFit, fit_profile
 
 __all__ = ["Literature", "gather", "table_of"]
@@ -28,6 +28,8 @@ class Literature:
     """The evidence of a plan and the three readings of it, on the pooling metric.
 
     pooled : None where no result carries a point estimate.
+    log_bayes_factor_selection : natural logarithm of the evidence for printing that depends on p,
+        over that for printing whatever comes.
     """
 
     table: EffectTable
@@ -35,6 +37,7 @@ class Literature:
     pooled: Pooled | None
     averaged: AveragedFit
     profile: ProfileFit
+    log_bayes_factor_selection: float
 
     @property
     def rows(self) -> tuple[EffectSize, ...]:
@@ -106,12 +109,17 @@ def gather(
             interval=settings.interval,
             level=settings.level,
         )
+    averaged = fit_averaged(evidence, weights=weights, metric=metric, priors=priors)
+    without_selection = log_evidence(
+        evidence, weights=weights, metric=metric, priors=priors, selection=False
+    )
     return Literature(
         table=table,
         left_out=left_out,
         pooled=pooled,
-        averaged=fit_averaged(evidence, weights=weights, metric=metric, priors=priors),
+        averaged=averaged,
         profile=fit_profile(evidence, weights=weights, metric=metric, priors=priors),
+        log_bayes_factor_selection=averaged.log_evidence - without_selection,
     )
 
 

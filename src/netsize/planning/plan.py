@@ -70,20 +70,29 @@ class Plan:
 
     def to_dict(self) -> dict[str, Any]:
         """Plain JSON types: what `netsize plan --json` prints."""
-        fit = self.literature.averaged
+        fit, profile = self.literature.averaged, self.literature.profile
+        shown = self.metric.shown
         return {
             "evidence": self._evidence(),
             "rows": [row.to_dict() for row in self.rows],
             "planning": self.answer.to_dict(),
             "selection": {
+                "mean": _summary(fit.mean.mapped(shown)),
+                "new_study": _summary(fit.new_study.mapped(shown)),
                 "heterogeneity": _summary(fit.heterogeneity),
                 "printing": [_summary(d) for d in fit.printing],
                 "unprinted_share": _summary(fit.unprinted),
                 "log_bayes_factor_effect": fit.log_bayes_factor,
+                "log_bayes_factor_selection": self.literature.log_bayes_factor_selection,
+                "profile": {
+                    "mean": _summary(profile.mean.mapped(shown)),
+                    "heterogeneity": profile.heterogeneity,
+                    "printing": list(profile.printing),
+                },
                 "grid_error": fit.error,
                 "grid_rested": fit.rested,
                 "shrunken": [
-                    {"label": row.label, **(_summary(d) if d else {})}
+                    {"label": row.label, **(_summary(d.mapped(shown)) if d else {})}
                     for row, d in zip(self.literature.rows, fit.shrunken, strict=True)
                 ],
             },

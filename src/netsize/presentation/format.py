@@ -9,15 +9,20 @@ import math
 
 __all__ = [
     "MISSING",
+    "bayes_factor",
     "count",
     "counts",
     "effect",
     "factor",
     "interval",
+    "number",
     "ordinal",
+    "p_limit",
     "p_value",
     "percent",
     "probability",
+    "stated",
+    "tick",
 ]
 
 MISSING = "-"
@@ -49,6 +54,12 @@ def probability(value: float | None) -> str:
     if 0.995 <= value < 1:
         return ">.99"
     return f"{value:.2f}".removeprefix("0") if value < 1 else "1"
+
+
+def stated(value: float | None) -> str:
+    """A probability with its relation, to stand after a name: "= .13", "< .01"."""
+    text = probability(value)
+    return f"{text[0]} {text[1:]}" if text[0] in "<>" else f"= {text}"
 
 
 def percent(value: float) -> str:
@@ -88,6 +99,16 @@ def factor(value: float | None) -> str:
     return MISSING if value is None or not math.isfinite(value) else f"{value:,.1f}"
 
 
+def bayes_factor(log_value: float) -> str:
+    """A Bayes factor from its natural logarithm: two figures, bounded at a million either way."""
+    if log_value > math.log(1e6):
+        return "over 1,000,000"
+    if log_value < -math.log(1e6):
+        return "under 1/1,000,000"
+    value = math.exp(log_value)
+    return f"{value:,.0f}" if value >= 99.5 else f"{value:.2g}"
+
+
 def ordinal(number: int) -> str:
     """20 → "20th"."""
     endings = {1: "st", 2: "nd", 3: "rd"}
@@ -95,5 +116,23 @@ def ordinal(number: int) -> str:
     return f"{number}{ending}"
 
 
+def tick(value: float) -> str:
+    """A round number on an axis: as few digits as it needs; thousands parted by commas."""
+    rounded = round(value, 9)
+    return _signless_zero(f"{rounded:,.0f}" if abs(rounded) >= 1000 else f"{rounded:g}")
+
+
+def p_limit(value: float) -> str:
+    """A significance level as it is written: .05."""
+    return f"{value:.6g}".removeprefix("0")
+
+
+def number(value: float | None, digits: int = 2) -> str:
+    """Any other number (a test statistic, a cost) with commas and fixed decimals."""
+    if value is None or not math.isfinite(value):
+        return MISSING
+    return _signless_zero(f"{value:,.{digits}f}")
+
+
 def _signless_zero(text: str) -> str:
-    return text.removeprefix("-") if float(text) == 0 else text
+    return text.removeprefix("-") if float(text.replace(",", "")) == 0 else text

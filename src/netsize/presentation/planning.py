@@ -9,7 +9,16 @@ from netsize.planning.consequences import Consequence, Habit
 from netsize.planning.plan import Plan
 from netsize.planning.rows import Row
 from netsize.planning.sensitivity import Variation
-from netsize.presentation.format import count, counts, effect, factor, interval, probability
+from netsize.presentation.format import (
+    bayes_factor,
+    count,
+    counts,
+    effect,
+    factor,
+    interval,
+    percent,
+    probability,
+)
 from netsize.presentation.headline import headline
 from netsize.presentation.terminal import Column, show_list, show_table, show_text
 
@@ -142,7 +151,24 @@ def _chances(plan: Plan) -> list[str]:
             f"Chance of a significant result as predicted, as n grows without end: "
             f"{probability(answer.ceiling)}."
         )
+    out.append(_selection(plan))
     return out
+
+
+def _selection(plan: Plan) -> str:
+    """What the evidence says about printing: ω of the band below significance, and its trace."""
+    fit = plan.literature.averaged
+    omega = fit.printing[0].quantile([0.025, 0.5, 0.975])
+    unprinted = fit.unprinted.quantile([0.025, 0.5, 0.975])
+    tau = fit.heterogeneity.quantile([0.025, 0.5, 0.975])
+    return (
+        f"Selective printing: a result below the first band is printed {effect(omega[1])} times "
+        f"as often as one in it {interval(omega[0], omega[2])}, and {percent(unprinted[1])} of "
+        f"results never were ({percent(unprinted[0])} to {percent(unprinted[2])}); Bayes factor for "
+        f"selection {bayes_factor(plan.literature.log_bayes_factor_selection)}, for an effect "
+        f"{bayes_factor(fit.log_bayes_factor)}. Between-study SD {effect(tau[1])} "
+        f"{interval(tau[0], tau[2])}."
+    )
 
 
 def _alternative(plan: Plan, a: Alternative) -> str:

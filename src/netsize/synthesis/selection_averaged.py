@@ -77,10 +77,11 @@ class AveragedFit:
         an effect. heterogeneity : of τ. printing : of each ω_j, given an effect.
     probability_negligible : posterior probability of μ = τ = 0.
     log_bayes_factor : natural logarithm of the evidence for an effect over that for none.
+    log_evidence : of the whole model, both components averaged over their priors.
     unprinted : of the share of conducted results that never got printed, given an effect.
     shrunken : for each result the distribution of its own true effect; None where an inequality
         straddles p-bands.
-    error : how far the watched quantiles moved in the last refinement of the grids.
+    error : how far the watched numbers moved in the last refinement of the grids.
     rested : whether that is within the tolerance asked.
     """
 
@@ -91,6 +92,7 @@ class AveragedFit:
     printing: tuple[GridDistribution, ...]
     probability_negligible: float
     log_bayes_factor: float
+    log_evidence: float
     unprinted: GridDistribution
     shrunken: tuple[GridDistribution | None, ...]
     error: float
@@ -105,10 +107,10 @@ def fit_averaged(
     priors: Priors | None = None,
     tolerance: float = 0.002,
 ) -> AveragedFit:
-    """Fit one literature, refining the grids until its quantiles move by no more than `tolerance`.
+    """Fit one literature, refining the grids until its answers move by no more than `tolerance`.
 
     `weights` are the dependence weights c_i, shape (k,). Watched are the 5th, 20th and 50th
-    percentiles of μ and of the new study's effect.
+    percentiles of μ and of the new study's effect, and the probability of a negligible effect.
     """
     priors = priors or Priors.default(metric)
     previous = None
@@ -117,7 +119,9 @@ def fit_averaged(
         literature = _literature([evidence], [weights], metric, priors, level)[0]
         posterior = _posterior(literature, priors, level)
         mean, new = _mean(posterior), _new_study(posterior, literature)
-        watched = np.concatenate([mean.quantile(_WATCHED), new.quantile(_WATCHED)])
+        negligible = _negligible(posterior, priors)
+        quantiles = [mean.quantile(_WATCHED), new.quantile(_WATCHED)]
+        watched = np.concatenate([*quantiles, [negligible]])
         if previous is not None:
             error = float(np.max(np.abs(watched - previous)))
             rested = error <= tolerance
@@ -130,8 +134,9 @@ def fit_averaged(
         new_study=new,
         heterogeneity=_along(posterior.joint.sum(axis=(1, 2)), posterior.tau_edges),
         printing=_printing(posterior),
-        probability_negligible=_negligible(posterior, priors),
+        probability_negligible=negligible,
         log_bayes_factor=posterior.log_evidence - posterior.log_null,
+        log_evidence=_total_evidence(posterior, priors),
         unprinted=_unprinted(posterior, literature),
         shrunken=_shrunken(posterior, literature, new.edges),
         error=error,
@@ -181,13 +186,13 @@ def log_evidence(
     """log of the prior-averaged likelihood, both components; without selection every ω_j is 1."""
     priors = priors or Priors.default(metric)
     literature = _literature([evidence], [weights], metric, priors, _LEVELS[0])[0]
-    posterior = _posterior(literature, priors, _LEVELS[0], selection=selection)
-    return float(
-        np.logaddexp(
-            np.log1p(-priors.negligible) + posterior.log_evidence,
-            (np.log(priors.negligible) if priors.negligible > 0 else -np.inf) + posterior.log_null,
-        )
-    )
+    return _total_evidence(_posterior(literature, priors, _LEVELS[0], selection=selection), priors)
+
+
+def _total_evidence(posterior: Posterior, priors: Priors) -> float:
+    with np.errstate(divide="ignore"):
+        shares = np.log([1 - priors.negligible, priors.negligible])
+    return float(logsumexp(np.add(shares, [posterior.log_evidence, posterior.log_null])))
 
 
 def _literature(

@@ -52,7 +52,7 @@ def conditional_bound(
         chance = band_probabilities([at], theta)[0, 0]
         if evidence.kernel in _SIGNED:
             chance = chance + band_probabilities([at], -theta)[0, 0]
-        return chance
+        return np.asarray(chance)
 
     def shortfall(theta: Array) -> Array:
         share = exceeds(observed, theta)
