@@ -164,8 +164,8 @@ def _selection(plan: Plan) -> str:
     return (
         f"Selective printing: a result below the first band is printed {effect(omega[1])} times "
         f"as often as one in it {interval(omega[0], omega[2])}, and {percent(unprinted[1])} of "
-        f"results never were ({percent(unprinted[0])} to {percent(unprinted[2])}); Bayes factor for "
-        f"selection {bayes_factor(plan.literature.log_bayes_factor_selection)}, for an effect "
+        f"results never were ({percent(unprinted[0])} to {percent(unprinted[2])}); Bayes factor "
+        f"for selection {bayes_factor(plan.literature.log_bayes_factor_selection)}, for an effect "
         f"{bayes_factor(fit.log_bayes_factor)}. Between-study SD {effect(tau[1])} "
         f"{interval(tau[0], tau[2])}."
     )
