@@ -106,15 +106,19 @@ class ReportedResult:
     tails : 2, or 1 where the paper's test was one-tailed.
     design, design_origin : the study's design and where that comes from; None where neither
         printed, tagged nor implied by the family.
-    direction : 1 in the predicted direction, -1 against it (`[against]`).
+    direction : 1, or -1 where a tag or the paper's words turn the sign: `direction * value` is
+        positive in the predicted direction. `[against]` beside a value that is printed negative
+        leaves 1, since the value already carries the sign.
     direction_origin : "assumed" where neither a printed sign nor a tag gives it.
-    sample : name of the set of participants; equal to `label` unless tagged.
+    sample, sample_origin : name of the set of participants, and whether a tag or a table gives it
+        ("printed") or the label of the line does ("assumed").
     correlation : within-pair correlation of a paired design, where given.
     cut : significance level of that paper, where it is not the usual one.
     groups, counts, interval, standard_error, metric : the parts of families that need them.
     also : further statistics printed for the same test, as (name, number), e.g. ("d", ...);
         they are checked against the statistic, never pooled beside it.
     left_out : the reason the user gave for leaving this result out, or None.
+    notes : what the reader had to take as meant, each in words.
     span, text : where it stands and the very characters read.
     """
 
@@ -133,6 +137,7 @@ class ReportedResult:
     direction: Literal[1, -1] = 1
     direction_origin: Origin = "assumed"
     sample: str = ""
+    sample_origin: Origin = "assumed"
     correlation: float | None = None
     cut: float | None = None
     groups: tuple[Group, ...] = ()
@@ -142,6 +147,7 @@ class ReportedResult:
     metric: str | None = None
     also: tuple[tuple[str, Printed], ...] = ()
     left_out: str | None = None
+    notes: tuple[str, ...] = ()
     span: Span = Span(line=1, column=1, start=0, end=0)
     text: str = ""
 
@@ -156,12 +162,16 @@ class ReportedResult:
 
 @dataclass(frozen=True, slots=True)
 class Unread:
-    """A place that looks like a statistic and cannot be used, with the reason and the mend."""
+    """A place that looks like a statistic and cannot be used, with the reason and the mend.
+
+    `text` is the faulty part as printed, `context` the line (or what surrounds it) with that part.
+    """
 
     line: int
     column: int
     text: str
     reason: str
+    context: str = ""
 
     def to_dict(self) -> dict[str, Any]:
         """Plain JSON types under the field names."""

@@ -1,0 +1,137 @@
+"""Fifth stage: fields common to all families, and what no printed statistic can be."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from netsize.reported import patterns
+from netsize.reported.families import Context, also, family_fields
+from netsize.reported.faults import Fault
+from netsize.reported.grouping import Group
+from netsize.reported.records import Origin, Printed
+from netsize.reported.sizes import sizes_of
+from netsize.reported.tags import Settings
+
+__all__ = ["fields_of"]
+
+_SIGNED = frozenset(("t", "r", "z", "smd", "coefficient", "means", "estimate"))
+
+
+def fields_of(
+    group: Group,
+    *,
+    tags: Settings,
+    defaults: Settings,
+    text: str,
+    line_start: int,
+    against_words: bool = False,
+) -> dict[str, Any] | None:
+    """Fields of the result in `group` except label, sample and place; None where it holds none.
+
+    `tags` are the settings of the line and of this statistic, `defaults` those of the file;
+    `text` is the normalised text, for the words before the symbol.
+    """
+    if group.faults:
+        item = group.faults[0]
+        raise Fault(item.fault or "", *(item.marked or (item.start, item.end)))
+    design, design_origin = _design(tags, defaults)
+    context = Context(
+        group=group,
+        sizes=sizes_of(group, tags, defaults),
+        design=design,
+        design_origin=design_origin,
+        preceding=_preceding_design(group, text, line_start),
+    )
+    fields = family_fields(context)
+    if fields is None:
+        return None
+    p = group.first("p")
+    fields["p"] = p.number if p is not None else None
+    fields["also"] = also(group, fields)
+    fields["tails"] = _tails(group, tags, defaults, text)
+    fields["correlation"] = tags.get("correlation", defaults.get("correlation"))
+    fields["cut"] = tags.get("cut", defaults.get("cut"))
+    fields["left_out"] = tags.get("left_out")
+    _set_direction(fields, tags, defaults, against_words)
+    _refuse_impossible(fields)
+    return fields
+
+
+def _design(tags: Settings, defaults: Settings) -> tuple[str | None, Origin]:
+    if "design" in tags:
+        return tags["design"], "tag"
+    if "design" in defaults:
+        return defaults["design"], "default"
+    return None, "assumed"
+
+
+def _preceding_design(group: Group, text: str, line_start: int) -> str | None:
+    item = group.primary
+    if item is None or item.kind != "t" or item.start - line_start < 3:
+        return None
+    before = text[max(line_start, item.start - 50) : item.start]
+    if not before[-2:].strip(" (,:-"):
+        return None
+    words = patterns.DESIGN_WORDS.search(before)
+    if words is None:
+        return None
+    return "paired" if words["paired"] else "one-sample" if words["one"] else "two-groups"
+
+
+def _tails(group: Group, tags: Settings, defaults: Settings, text: str) -> int:
+    if "tails" in tags:
+        return int(tags["tails"])
+    for item in group.items:
+        if "one-tailed" in item.flags:
+            return 1
+        if "two-tailed" in item.flags:
+            return 2
+    around = text[max(group.start - 20, 0) : group.end + 20]
+    if "tail" in around or "sided" in around:
+        said = patterns.TAILS_WORDS.search(around.split("\n")[0] if "\n" not in around else around)
+        if said:
+            return 1 if said[1].lower() in ("one", "1") else 2
+    return int(defaults.get("tails", 2))
+
+
+def _set_direction(
+    fields: dict[str, Any],
+    tags: Settings,
+    defaults: Settings,
+    against_words: bool,
+) -> None:
+    value = fields.get("value")
+    signed = fields["family"] in _SIGNED
+    negative = signed and value is not None and value < 0
+    if fields["family"] == "means":
+        first, second = fields["groups"]
+        negative = first.mean < second.mean
+    origin: Origin = "tag" if "against" in tags else "default"
+    said = tags.get("against", defaults.get("against"))
+    if said is None and against_words:
+        said, origin = True, "printed"
+    if said is None:
+        fields["direction"], fields["direction_origin"] = 1, "printed" if negative else "assumed"
+        if signed and not negative and value is not None:
+            fields["direction_origin"] = "printed"
+        return
+    fields["direction"] = 1 if bool(said) == negative else -1
+    fields["direction_origin"] = origin
+
+
+def _refuse_impossible(fields: dict[str, Any]) -> None:
+    p: Printed | None = fields["p"]
+    if p is not None:
+        if p.value > 1:
+            raise Fault(f"p cannot be above 1; it reads {p.value:g}")
+        if p.value < 0:
+            raise Fault("p cannot be negative")
+        if p.value == 0 and (p.relation == "<" or not p.decimals):
+            raise Fault("p cannot be 0; write p < .001")
+        if p.relation == ">" and p.value == 1:
+            raise Fault("p cannot be above 1")
+    n = fields.get("n", ())
+    if n and sum(n) < 2:
+        raise Fault("a study needs at least 2 participants")
+    if fields.get("df") and any(d > 1e7 for d in fields["df"]):
+        raise Fault("these degrees of freedom are too large to be meant")

@@ -1,0 +1,422 @@
+"""The arithmetic check: do the printed numbers of one result agree with each other?
+
+Every printed number stands for the range that rounds to it. p is recomputed over that range of the
+statistic and compared with the range of the printed p; a difference that rounding explains is none.
+Nothing is repaired: a finding says what disagrees and what would agree (Bakker & Wicherts 2011).
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterator
+from dataclasses import dataclass
+from typing import Literal, TypeAlias
+
+from scipy.special import chdtrc, fdtrc, ndtr, stdtr
+
+from netsize.reported.records import Printed, ReportedResult
+
+__all__ = ["Finding", "FindingKind", "Range", "check", "p_range", "rounding_range"]
+
+FindingKind: TypeAlias = Literal["p", "effect", "df", "means"]
+Range: TypeAlias = tuple[float, float]
+
+_USUAL_CUT = 0.05
+_TINY = 1e-12
+
+
+@dataclass(frozen=True, slots=True)
+class Finding:
+    """One disagreement.
+
+    Attributes
+    ----------
+    kind : "p" (p against its statistic), "effect" (printed effect size against the statistic),
+        "df" (degrees of freedom against numbers of participants), "means" (means and SDs against
+        the statistic).
+    message : what disagrees and what would agree, in words.
+    changes_significance : True where printed and recomputed p lie on opposite sides of the
+        paper's significance level.
+    """
+
+    kind: FindingKind
+    message: str
+    changes_significance: bool = False
+
+    def to_dict(self) -> dict[str, object]:
+        """Plain JSON types under the field names."""
+        return {
+            "kind": self.kind,
+            "message": self.message,
+            "changes_significance": self.changes_significance,
+        }
+
+
+def check(result: ReportedResult) -> tuple[Finding, ...]:
+    """Every disagreement among the printed numbers of `result`; () where all agree."""
+    return tuple(
+        finding
+        for part in (_check_p, _check_effects, _check_df, _check_means)
+        for finding in part(result)
+    )
+
+
+def rounding_range(number: Printed) -> Range:
+    """All values that round to the printed one, ends included; an inequality is open-ended."""
+    if number.relation == "<":
+        return -math.inf, number.value
+    if number.relation == ">":
+        return number.value, math.inf
+    half = 0.5 * 10.0 ** -(number.decimals or 0) if number.decimals is not None else 0.0
+    return number.value - half, number.value + half
+
+
+def p_range(result: ReportedResult, df: tuple[float, ...] | None = None) -> Range | None:
+    """The p-values that the printed statistic allows, by the result's tails; None without one.
+
+    t: 2 P(T_df ≥ |t|); r through t = r √(df / (1 - r²)); F, χ²: upper tail; z: 2 P(Z ≥ |z|).
+    One-tailed t, r and z: the tail on the predicted side. `df` replaces the printed one.
+    """
+    if result.value is None or result.family not in ("t", "f", "r", "z", "chi2", "coefficient"):
+        return None
+    df = df if df is not None else _df_of(result)
+    if df is None:
+        return None
+    ends = _statistic_range(result)
+    values = [_tail(result, end, df) for end in ends]
+    if ends[0] < 0 < ends[1] and result.family not in ("f", "chi2") and result.tails == 2:
+        values.append(1.0)
+    return min(values), max(values)
+
+
+def _df_of(result: ReportedResult) -> tuple[float, ...] | None:
+    if result.family == "z":
+        return ()
+    if result.df:
+        return result.df
+    if result.family == "r" and result.n and sum(result.n) > 2:
+        return (sum(result.n) - 2.0,)
+    return None
+
+
+def _statistic_range(result: ReportedResult) -> Range:
+    assert result.value is not None
+    printed = Printed(result.value, result.relation, result.decimals)
+    if result.family == "coefficient":
+        beside = dict(result.also).get("t")
+        if beside is not None:
+            printed = beside
+        elif result.standard_error:
+            low, high = (end / result.standard_error for end in rounding_range(printed))
+            return low, high
+    low, high = rounding_range(printed)
+    if result.family in ("f", "chi2"):
+        return max(low, 0.0), max(high, 0.0)
+    if result.family == "r":
+        return max(low, -1 + _TINY), min(high, 1 - _TINY)
+    if result.relation == "<" and result.value > 0:
+        low = 0.0 if result.tails == 2 else low  # "t < 1" speaks of the size of t
+    return low, high
+
+
+def _tail(result: ReportedResult, value: float, df: tuple[float, ...]) -> float:
+    family = result.family
+    if math.isinf(value) and family not in ("f", "chi2"):
+        toward = value * result.direction > 0
+        return 0.0 if result.tails == 2 or toward else 1.0
+    if family == "f":
+        upper = float(fdtrc(df[0], df[1], value)) if math.isfinite(value) else 0.0
+        return upper if result.tails == 2 else upper / 2
+    if family == "chi2":
+        upper = float(chdtrc(df[0], value)) if math.isfinite(value) else 0.0
+        return upper if result.tails == 2 or df[0] != 1 else upper / 2
+    if family == "r":
+        value = value * math.sqrt(df[0] / (1 - value * value))
+    size = abs(value) if result.tails == 2 else result.direction * value
+    upper = float(ndtr(-size)) if family == "z" else float(stdtr(df[0], -size))
+    return 2 * upper if result.tails == 2 else upper
+
+
+# --- p against the statistic ---------------------------------------------------------------------
+
+
+def _check_p(result: ReportedResult) -> Iterator[Finding]:
+    if result.p is None or result.family == "p":
+        return
+    implied = p_range(result)
+    if implied is None or _agree(implied, result.p):
+        return
+    cut = result.cut or _USUAL_CUT
+    printed = rounding_range(result.p)
+    changes = _side(implied, cut) * _side(printed, cut) < 0
+    statistic = _statistic_text(result)
+    message = (
+        f"p is printed as {_number(result.p)}, but {statistic} gives p = {_range(implied)}"
+        f"{' (one-tailed)' if result.tails == 1 else ''}; {_what_would_agree(result, cut)}"
+    )
+    if changes:
+        message += f". The two lie on opposite sides of {_plain(cut)}"
+    yield Finding("p", message, changes)
+
+
+def _agree(implied: Range, printed: Printed) -> bool:
+    low, high = rounding_range(printed)
+    slack = 1e-9 + (5e-13 if printed.relation == "=" else 0.0)
+    if printed.relation == "=" and printed.value == 0:
+        low = -math.inf
+    return implied[0] <= high + slack and implied[1] >= low - slack
+
+
+def _side(ends: Range, cut: float) -> int:
+    """1 where the whole range is significant, -1 where none is, 0 across the level."""
+    return 1 if ends[1] <= cut + _TINY else -1 if ends[0] >= cut - _TINY else 0
+
+
+def _what_would_agree(result: ReportedResult, cut: float) -> str:
+    assert result.p is not None
+    found: list[str] = []
+    other = _with_tails(result, 1 if result.tails == 2 else 2)
+    if other is not None and _agree(other, result.p):
+        found.append("a one-tailed test" if result.tails == 2 else "a two-tailed test")
+    for df in _df_typos(result):
+        implied = p_range(result, df)
+        if implied is not None and _agree(implied, result.p):
+            found.append(f"df = {', '.join(_plain(d) for d in df)} instead")
+            break
+    if result.p.relation == "=" and result.p.value == cut:
+        found.append(f"p < {_plain(cut)}" if _side(p_range(result) or (0, 1), cut) > 0 else "")
+    found = [f for f in found if f]
+    return f"{' or '.join(found)} would agree" if found else "nothing simple would make them agree"
+
+
+def _with_tails(result: ReportedResult, tails: Literal[1, 2]) -> Range | None:
+    from dataclasses import replace
+
+    if result.family == "chi2" and result.df != (1.0,):
+        return None
+    if result.family == "f" and result.df[:1] != (1.0,):
+        return None
+    return p_range(replace(result, tails=tails))
+
+
+def _df_typos(result: ReportedResult) -> Iterator[tuple[float, ...]]:
+    """Slips of one key in the df: n for df, a lost, doubled, extra or swapped digit."""
+    df = _df_of(result)
+    if not df:
+        return
+    if result.family == "r":
+        yield (df[0] - 2,) if df[0] > 2 else df
+    if len(df) == 2:
+        yield df[1], df[0]
+    last = df[-1]
+    if last != int(last):
+        return
+    digits = str(int(last))
+    slips = [digits[:i] + digits[i + 1 :] for i in range(len(digits))]
+    slips += [
+        digits[:i] + digits[i + 1] + digits[i] + digits[i + 2 :] for i in range(len(digits) - 1)
+    ]
+    slips += [digits[:i] + d + digits[i:] for i in range(len(digits) + 1) for d in "0123456789"]
+    for slip in slips:
+        if slip and slip[0] != "0" and slip != digits:
+            yield (*df[:-1], float(slip))
+
+
+# --- printed effect sizes against the statistic --------------------------------------------------
+
+
+def _check_effects(result: ReportedResult) -> Iterator[Finding]:
+    if result.family not in ("t", "f") or result.value is None or result.relation != "=":
+        return
+    if not result.df:
+        return
+    for name, printed in result.also:
+        candidates = _effect_candidates(result, name)
+        if not candidates or printed.relation != "=":
+            continue
+        slack = 0.5 * 10.0 ** -(printed.decimals if printed.decimals is not None else 2)
+        matches = [
+            what for what, low, high in candidates
+            if low - slack - 1e-9 <= abs(printed.value) <= high + slack + 1e-9
+        ]  # fmt: skip
+        expected = _expected_design(result)
+        if any(expected is None or expected in what or what == "" for what in matches):
+            if expected is None and matches and all("paired" in what for what in matches):
+                yield Finding(
+                    "effect",
+                    f"{name} = {_plain(printed.value)} fits {matches[0]}; if that is the design, "
+                    "mark the line [paired] or [one-sample]",
+                )
+            continue
+        options = "; ".join(
+            f"{_between(low, high)}{f' for {what}' if what else ''}"
+            for what, low, high in candidates
+        )
+        message = (
+            f"{name} is printed as {_plain(printed.value)}, but {_statistic_text(result)} "
+            f"gives {options}"
+        )
+        if matches:
+            message += f"; the printed one fits {matches[0]}"
+        yield Finding("effect", message)
+
+
+def _expected_design(result: ReportedResult) -> str | None:
+    if result.design in ("paired", "one-sample"):
+        return "paired"
+    return "two groups" if result.design == "two-groups" else None
+
+
+def _effect_candidates(result: ReportedResult, name: str) -> list[tuple[str, float, float]]:
+    """(design in words, low, high): sizes of the effect that the rounded statistic allows."""
+    assert result.value is not None
+    low, high = rounding_range(Printed(abs(result.value), "=", result.decimals))
+    low = max(low, 0.0)
+    error = result.df[-1]
+    if result.family == "f":
+        if result.df[0] != 1:
+            return _variance_shares(name, low, high, result.df[0], error)
+        shares = _variance_shares(name, low, high, 1.0, error)
+        if shares:
+            return shares
+        low, high = math.sqrt(low), math.sqrt(high)
+    elif name.startswith(("partial-", "eta2", "epsilon2", "omega2")):
+        return _variance_shares(name, low * low, high * high, 1.0, error)
+    if name in ("d", "g"):
+        return _mean_differences(result, low, high, error)
+    if name == "dz":
+        return [
+            ("a paired or one-sample test", low / math.sqrt(error + 1), high / math.sqrt(error + 1))
+        ]
+    if name in ("r", "phi") and result.family == "t":
+        return [("", low / math.sqrt(low * low + error), high / math.sqrt(high * high + error))]
+    return []
+
+
+def _mean_differences(
+    result: ReportedResult, low: float, high: float, error: float
+) -> list[tuple[str, float, float]]:
+    """d from t: t √(1/n₁ + 1/n₂), with equal groups 2t/√N or 2t/√df; t/√n for pairs.
+
+    Papers do not say whether their d carries the small-sample factor (about 1 - 3/(4 df - 1)), so
+    either passes.
+    """
+    shrunk = 1 - 3 / (4 * error - 1) if error > 1 else 0.5
+    if len(result.n) == 2:
+        scale = math.sqrt(1 / result.n[0] + 1 / result.n[1])
+        two = (low * scale * shrunk, high * scale)
+    else:
+        scale = 2 / math.sqrt(error + 2)
+        two = (low * scale * shrunk, high * 2 / math.sqrt(error))
+    n = error + 1
+    pairs = (low / math.sqrt(n) * shrunk, high / math.sqrt(error))
+    return [("two groups", *two), ("a paired or one-sample test", *pairs)]
+
+
+def _variance_shares(
+    name: str, low: float, high: float, df1: float, df2: float
+) -> list[tuple[str, float, float]]:
+    """Partial η² = df₁F/(df₁F+df₂); ε² and ω² with F - 1 above; plain η² is at most the partial."""
+
+    def share(f: float, extra: float, less: float) -> float:
+        return df1 * (f - less) / (df1 * f + df2 + extra)
+
+    if name == "partial-eta2":
+        return [("", share(low, 0, 0), share(high, 0, 0))]
+    if name in ("eta2", "generalized-eta2"):
+        return [("", 0.0, share(high, 0, 0))]
+    if name == "partial-omega2":
+        return [("", share(low, 1, 1), share(high, 1, 1))]
+    if name in ("epsilon2", "partial-epsilon2"):
+        return [("", share(low, 0, 1), share(high, 0, 1))]
+    return []
+
+
+# --- df against n, means against the statistic ---------------------------------------------------
+
+
+def _check_df(result: ReportedResult) -> Iterator[Finding]:
+    if not result.df or not result.n:
+        return
+    total, df = sum(result.n), result.df[-1]
+    sizes = " + ".join(str(n) for n in result.n)
+    wanted = _expected_df(result, total)
+    if wanted is None:
+        return
+    low, high, words = wanted
+    if low - 1e-9 <= df <= high + 1e-9:
+        return
+    shown = _plain(low) if low == high else f"{_plain(low)} to {_plain(high)}"
+    yield Finding("df", f"df = {_plain(df)} does not fit n = {sizes}: {words} has df = {shown}")
+
+
+def _expected_df(result: ReportedResult, total: int) -> tuple[float, float, str] | None:
+    if result.family == "r":
+        if result.metric == "partial-r":
+            return 1.0, total - 2.0, "a partial correlation"
+        return total - 2.0, total - 2.0, "a correlation"
+    if result.family not in ("t", "f") or (result.family == "f" and result.df[0] != 1):
+        if result.family == "f":
+            return (
+                1.0,
+                math.inf if result.design == "paired" else total - 1.0,
+                "a test of that size",
+            )
+        return None
+    if result.design in ("paired", "one-sample"):
+        return total - 1.0, total - 1.0, f"a {result.design} test"
+    if result.design == "correlation":
+        return 1.0, total - 2.0, "a regression coefficient"
+    if len(result.n) == 2 and result.family == "t":
+        if result.df[-1] != int(result.df[-1]):
+            return min(result.n) - 1.0, total - 2.0, "Welch's test"
+        return total - 2.0, total - 2.0, "a test of two groups"
+    return 1.0, total - 1.0, "a test of that size"
+
+
+def _check_means(result: ReportedResult) -> Iterator[Finding]:
+    if result.family != "t" or len(result.groups) != 2 or result.value is None:
+        return
+    if result.relation != "=" or result.design not in (None, "two-groups"):
+        return
+    a, b = result.groups
+    pooled = ((a.n - 1) * a.sd**2 + (b.n - 1) * b.sd**2) / (a.n + b.n - 2)
+    welch = a.sd**2 / a.n + b.sd**2 / b.n
+    difference = abs(a.mean - b.mean)
+    expected = difference / math.sqrt(pooled * (1 / a.n + 1 / b.n))
+    # means and SDs are rounded too: a tenth of t and a tenth of its unit covers two decimals
+    slack = 0.1 * expected + 0.1
+    if min(abs(abs(result.value) - t) for t in (expected, difference / math.sqrt(welch))) > slack:
+        yield Finding(
+            "means",
+            f"t is printed as {_plain(result.value)}, "
+            f"but the means and SDs give t = {expected:.2f}",
+        )
+
+
+# --- words ---------------------------------------------------------------------------------------
+
+
+def _statistic_text(result: ReportedResult) -> str:
+    symbol = {"f": "F", "chi2": "χ²", "coefficient": "b"}.get(result.family, result.family)
+    df = f"({', '.join(_plain(d) for d in result.df)})" if result.df else ""
+    return f"{symbol}{df} {result.relation} {_plain(result.value or 0.0)}"
+
+
+def _number(number: Printed) -> str:
+    digits = f"{number.value:.{number.decimals}f}" if number.decimals else f"{number.value:g}"
+    return digits if number.relation == "=" else f"{number.relation} {digits}"
+
+
+def _range(ends: Range) -> str:
+    low, high = (f"{end:.3f}" if end >= 0.0005 else "<.001" for end in ends)
+    return low if low == high else f"{low} to {high}"
+
+
+def _between(low: float, high: float) -> str:
+    first, last = f"{low:.2f}", f"{high:.2f}"
+    return first if first == last else f"{first} to {last}"
+
+
+def _plain(value: float) -> str:
+    return f"{value:g}"

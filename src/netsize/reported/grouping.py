@@ -1,0 +1,165 @@
+"""Third stage: which items belong to one test.
+
+"t(38) = 2.31, p = .026, d = 0.73" is one result, not three. A test symbol opens a group; what
+stands beside it in the same sentence (p, effect size, group sizes, interval, means) joins it,
+before or after, unless the group already holds one of its kind. A settings bracket belongs to the
+statistic before it, or to the whole line where it stands before the first.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Iterator
+from dataclasses import dataclass, field
+from typing import Any
+
+from netsize.reported import patterns
+from netsize.reported.items import PRIMARY, Item
+from netsize.reported.tags import merged
+
+__all__ = ["Group", "Line", "group_items"]
+
+_LONGEST_GAP = 100
+_MOST_ITEMS = 40  # no test comes with more numbers; keeps the time linear
+# kinds of which a group may hold several
+_MANY = frozenset(("size", "mean", "sd", "se", "ci", "df"))
+_VALUED = frozenset(
+    ("t", "F", "r", "z", "chi", "odds", "ratio", "slope", "smd", "eta", "r2", "phi", "f2", "mean")
+)
+
+
+@dataclass(slots=True)
+class Group:
+    """The items of one test, its primary item (None where only effect sizes or p stand there)."""
+
+    start: int
+    end: int
+    primary: Item | None = None
+    items: list[Item] = field(default_factory=list)
+    settings: dict[str, Any] = field(default_factory=dict)
+    faults: list[Item] = field(default_factory=list)
+
+    def first(self, *kinds: str) -> Item | None:
+        """The first item of one of these kinds."""
+        return next((i for i in self.items if i.kind in kinds), None)
+
+    def every(self, kind: str) -> list[Item]:
+        """All items of this kind, in order."""
+        return [i for i in self.items if i.kind == kind]
+
+    def add(self, item: Item) -> None:
+        """Take an item in; an interval goes to the number before it."""
+        if item.interval is not None:
+            owner = next((i for i in reversed(self.items) if i.kind in _VALUED), None)
+            if owner is not None and owner.interval is None:
+                owner.interval = item.interval
+        self.items.append(item)
+        self.start = min(self.start, item.start)
+        self.end = max(self.end, item.end)
+        if item.fault:
+            self.faults.append(item)
+
+
+@dataclass(slots=True)
+class Line:
+    """One logical line: its groups, and the settings that stand before them all."""
+
+    start: int
+    end: int
+    groups: list[Group] = field(default_factory=list)
+    settings: dict[str, Any] = field(default_factory=dict)
+    faults: list[Item] = field(default_factory=list)
+    tags: list[Item] = field(default_factory=list)
+
+
+def group_items(items: Iterable[Item], text: str) -> Iterator[Line]:
+    """Logical lines (hard line breaks part them) that hold at least one item."""
+    line: Line | None = None
+    for item in items:
+        if line is None or item.start >= line.end:
+            if line is not None:
+                yield line
+            start = text.rfind("\n", 0, item.start) + 1
+            end = text.find("\n", item.start)
+            line = Line(start, len(text) if end < 0 else end)
+        _place(item, line, text)
+    if line is not None:
+        yield line
+
+
+def _place(item: Item, line: Line, text: str) -> None:
+    group = line.groups[-1] if line.groups else None
+    if item.kind == "tag":
+        _place_tag(item, line, group)
+        return
+    if group is None or not _joins(group, item, text):
+        group = Group(item.start, item.end)
+        line.groups.append(group)
+    group.add(item)
+    if item.kind in PRIMARY or item.kind == "other":
+        group.primary = _leading(group.primary, item)
+
+
+def _place_tag(item: Item, line: Line, group: Group | None) -> None:
+    line.tags.append(item)
+    if group is not None and any(i.kind != "size" for i in group.items):
+        group.settings = merged(group.settings, item.settings)
+        if item.fault:
+            group.faults.append(item)
+    else:
+        line.settings = merged(line.settings, item.settings)
+        if item.fault:
+            line.faults.append(item)
+
+
+def _joins(group: Group, item: Item, text: str) -> bool:
+    if item.start - group.end > _LONGEST_GAP:
+        return False
+    gap = text[group.end : item.start]
+    if item.kind == "other" or len(group.items) >= _MOST_ITEMS:
+        return False
+    if len(gap) > 2 and _ends_sentence(gap):
+        return False
+    if item.kind in PRIMARY:
+        return group.primary is None or _same_test(group.primary, item, gap)
+    if group.primary is not None and group.primary.kind == "other":
+        return False
+    if item.kind == "mean":
+        return sum(i.kind == "mean" for i in group.items) < 2 or group.primary is None
+    return item.kind in _MANY or not any(
+        i.kind == item.kind and (i.kind != "smd" or i.name == item.name) for i in group.items
+    )
+
+
+def _ends_sentence(gap: str) -> bool:
+    found = patterns.SENTENCE_END.search(gap)
+    if found is None:
+        return False
+    return patterns.ABBREVIATION.search(gap, 0, found.start()) is None
+
+
+def _same_test(before: Item, item: Item, gap: str) -> bool:
+    """Whether a second test symbol describes the test that the first one opened."""
+    if before.kind == "rank":
+        return item.kind == "z"
+    if before.kind == "slope":
+        return item.kind in ("t", "z", "wald")
+    if before.kind == "odds":
+        return item.kind in ("z", "wald", "chi") and not item.arguments[1:]
+    if before.kind == "pair":
+        return item.kind == "chi" and _only_connectors(gap)
+    if before.kind == "r" and not before.arguments:
+        return item.kind == "t" and _only_connectors(gap)
+    if item.kind == "r":
+        return not item.arguments and not item.sizes and _only_connectors(gap)
+    return False
+
+
+def _leading(before: Item | None, item: Item) -> Item:
+    """The item that says which family a group of two test symbols is."""
+    if before is None or before.kind == "rank":
+        return item
+    return before
+
+
+def _only_connectors(gap: str) -> bool:
+    return all(w.lower() in patterns.CONNECTORS for w in patterns.WORD.findall(gap))

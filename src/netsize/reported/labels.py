@@ -1,0 +1,61 @@
+"""What a result is called and whose data it holds.
+
+The label is the text before the first statistic of a line, up to a colon ("Study 1: t(38) = 2.31"),
+or a short name with a number there ("Exp. 2b, t(38) = 2.31"). Results of one labelled line come
+from one paper, most often from one set of participants: they share the label as their sample.
+Without a label every result is its own sample. Either is said in the notes, and `[sample NAME]`
+sets it.
+"""
+
+from __future__ import annotations
+
+import re
+
+__all__ = ["Labels", "label_before"]
+
+_COLON = re.compile(r":(?=[ \t]|\Z)")
+_BULLET = re.compile(r"[ \t]*(?:[-*•>–]+[ \t]+|\([a-z0-9]{1,3}\)[ \t]+)?")
+_SHORT_NAME = re.compile(
+    r"[ \t]*((?:[^\W\d_][\w.&'-]{0,20}[ ]){0,3}[#(]?[0-9]{1,4}[a-z]?\)?|[#][\w-]{1,20})"
+    r"[ \t]*[,;:|)-]?[ \t]*\Z"
+)
+_LONGEST = 200
+
+
+def label_before(lead: str) -> tuple[int, int] | None:
+    """Where in `lead`, the text of a line before its first statistic, the label stands."""
+    if not lead.strip():
+        return None
+    bullet = _BULLET.match(lead)
+    start = bullet.end() if bullet else 0
+    colon = _COLON.search(lead, start)
+    if colon is None:
+        name = _SHORT_NAME.match(lead, start)
+        return (name.start(1), name.end(1)) if name else None
+    end = colon.start()
+    while end > start and lead[end - 1] in " \t":
+        end -= 1
+    return (start, end) if start < end <= start + _LONGEST else None
+
+
+class Labels:
+    """Gives out unique labels in order of appearance."""
+
+    def __init__(self) -> None:
+        self._given: set[str] = set()
+        self._times: dict[str, int] = {}
+        self._numbered = 0
+
+    def unique(self, label: str | None) -> str:
+        """`label`, numbered from its second time on; "result 1", ... where there is none."""
+        if label is None:
+            self._numbered += 1
+            label = f"result {self._numbered}"
+        times = self._times.get(label, 0) + 1
+        candidate = label if times == 1 else f"{label} ({times})"
+        while candidate in self._given:
+            times += 1
+            candidate = f"{label} ({times})"
+        self._times[label] = times
+        self._given.add(candidate)
+        return candidate

@@ -1,0 +1,279 @@
+r"""Every pattern of the reader, named by what it matches.
+
+The reporting style behind them is that of the behavioural and medical literature (American
+Psychological Association, Publication Manual, 7th ed., ch. 6: symbol, degrees of freedom in round
+brackets, value, p); notes say where real papers break it. All work on normalised text. No pattern
+nests one repetition in another and every repetition is bounded, so matching is linear.
+"""
+
+from __future__ import annotations
+
+import re
+
+from netsize.reported.numbers import NUMBER
+
+__all__ = [
+    "ABBREVIATION",
+    "AGAINST_WORDS",
+    "BARE_ARGUMENTS",
+    "BRACKETS",
+    "CHAINED",
+    "CONNECTORS",
+    "COUNT_PAIR",
+    "DESIGN_WORDS",
+    "HEADS",
+    "INTERVAL",
+    "LABEL_WITHIN_LINE",
+    "MARKS",
+    "NOT_FINITE",
+    "NUMBER_HERE",
+    "OTHER_HEAD",
+    "PERCENT_PAIR",
+    "RELATION",
+    "SENTENCE_END",
+    "SIZES",
+    "SIZE_EACH",
+    "SOFT_BREAK",
+    "START",
+    "TABLE_2X2",
+    "TAILS_WORDS",
+    "TRAILING",
+    "WORD",
+    "YEAR",
+]
+
+_W = r"[ \t]{0,12}"
+_N = r"[0-9]{1,9}(?:[.,][0-9]{1,6})?"
+
+# Symbols at which a statistic may start, with the characters they start with. What follows decides
+# whether it is one. Where two share a first character, the longer stands first.
+_PERCENT = r"[0-9]{1,3}(?:[.,][0-9]{1,3})?[ ]?%"
+_PARTIAL_SQUARED = (
+    r"[ _-]?(?:p|G|partial)?[ _-]?(?:\^?2|sq(?:uared?)?\b)(?:[ _]?(?:p|G|partial)\b)?"
+)
+_SYMBOLS = (
+    ("tag", "[", r"\["),
+    ("ci", "0123456789", r"[0-9]{2}(?:\.[0-9]{1,2})?[ ]?%[ ]?"
+        r"(?:CIs?\b|C\.I\.|[Cc]onfidence[ -][Ii]nterval)"),
+    ("ci", "C", r"(?:CI|C\.I\.)(?:[ _-]?[0-9]{2}%?)?(?![A-Za-z])"),
+    ("table", "2", r"2[ ]?x[ ]?2"),
+    ("dfafter", "0123456789", rf"{_N}{_W}(?:degrees[ ]of[ ]freedom|d\.f\.|df)(?![\w=])"),
+    ("pair", "0123456789", rf"[0-9]{{1,7}}(?:{_W}/{_W}|[ ](?:of|out[ ]of)[ ])[0-9]{{1,7}}"),
+    ("percent", "0123456789", _PERCENT + r"[ ](?:of|\([nN])"),
+    ("chi", "χWXxCc", r"(?:Wald[ '-]{0,2})?(?:χ|[Cc]hi|[Xx])[ -]?(?:\^?2|sq(?:uared?)?\b)"),
+    ("wald", "Ww", r"[Ww]ald(?:'s)?(?![\w])"),
+    ("r2", "ΔDdRa", r"(?:Δ|[Dd]elta[ -]?|adj(?:usted|\.)?[ ])?R[ ]?\^?2(?:[ _-]?change)?"),
+    # "np2" and "hp2" are what copying ηp² from a PDF often leaves
+    ("eta", "PpGgηωεEeOonh", r"(?:[Pp]artial[ -]|[Gg]enerali[sz]ed[ -])?"
+        r"(?:η|ω|ε|[Ee]ta|[Oo]mega|[Ee]psilon|[nh](?=p))" + _PARTIAL_SQUARED),
+    ("odds", "OoaA", r"(?:[Oo]dds[ ]ratio|[aA]?OR)s?\b(?:[ ]?\(a?OR\))?"),
+    ("ratio", "aRrHhI", r"(?:a?RR|a?HR|IRR|[Rr]isk[ ]ratio|[Rr]elative[ ]risk|"
+        r"[Hh]azards?[ ]ratio)\b(?:[ ]?\([a-zA-Z]{1,4}\))?"),
+    ("padjusted", "pPq", r"[pP][ _-]?(?:adj|corr|FDR|fdr|FWE|fwe|[bB]onf|[hH]olm|[tT]ukey)"
+        r"[a-z]{0,10}\b|q(?=[ ]?[=<])"),
+    ("plural", "tFrzpdgχ", r"(?:[tFrzpdg]'?s|χ\^?2'?s)(?=[ ]?(?:\([0-9 .,;]{1,20}\)[ ]?)?[<>=])"),
+    ("p", "pP", r"[pP](?:[ -]?[vV]alue)?"
+        r"(?:[ _]?(?:one|two|1|2)[ -]?(?:tailed|sided|tail))?(?![\w'])"),
+    ("ns", "nN", r"[nN]\.[ ]?[sS]\.|[nN][sS](?![\w.'=<>]|[ ]?[=<>])"),
+    ("size", "nN", r"[nN](?:[ _]?(?:[0-9]{1,2}|total|tot|[A-Za-z]{1,8}(?=[ ]?=)))?(?=[ ]?[=:])"
+        r"|ns(?=[ ]?=)"),
+    ("df", "dD", r"(?:df|d\.f\.|DF|[Dd]egrees[ ]of[ ]freedom)(?=[ ]?[=:(])"),
+    ("mean", "Mm", r"(?:M|[Mm]eans?)_?[0-9]?(?=[ ]?[=:(]|[ ][0-9])"),
+    ("sd", "Ss",
+        r"(?:SDs?|S\.D\.|sd|[Ss]tandard[ ]deviation)_?[0-9]?(?=[ ]?[=:]|[ ][0-9]|[ ]of[ ])"),
+    ("se", "Ss", r"(?:SEM?|S\.E\.|se|s\.e\.|[Ss]tandard[ ]error)_?[bB0-9]?(?=[ ]?[=:]|[ ][0-9])"),
+    ("smd", "CHGdgΔ", r"(?:Cohen'?s?[ ]|Hedges'?s?[ ]|Glass'?s?[ ])?"
+        r"(?:d|g|Δ)_?(?:av|rm|unb|unbiased|[zsp])?(?=[ ]?(?:[=<>:]|of[ ]|was[ ]|\())"),
+    ("f2", "Cf", r"(?:Cohen'?s?[ ])?f(?:\^?2)?(?=[ ]?=)"),
+    ("phi", "φϕPpCVw", r"(?:φ|ϕ|[Pp]hi|(?:Cram[eé]r'?s?[ ])?V|w)(?=[ ]?=)"),
+    ("slope", "bBβ", r"(?:b|B|β|[Bb]eta)_?[0-9]?(?=[ ]?[=:]|[ ]of[ ])"),
+    ("rank", "UW", r"[UW](?=[ ]?(?:=|\([0-9]))"),
+    ("bayes", "B", r"BF_?[01]{0,2}(?=[ ]?[=<>(])"),
+    ("r", "PpSsrρR", r"(?:[Pp]artial[ -]|[Ss]emi-?partial[ -])?"
+        r"(?:r_?(?:partial|part|pb|xy|s|p)?|pr|ρ|rho|R)(?![\w'])|r(?=_?\{?[0-9])"),
+    ("F", "Ff", r"F[12]?(?=[ ]{0,2}[(\[{])|[Ff](?=[ ]?_?\{?[0-9(\[=<>])"),
+    ("t", "tT", r"[tT](?![A-Za-z'])"),
+    ("z", "zZ", r"[zZ](?![\w'])"),
+)  # fmt: skip
+# Any other name with plain numbers in brackets and a relation: best(38) = 2, Q(12) = 34.
+_OTHER = r"(?P<other>[^\W\d_]{1,24}'?(?=[ ]?\([0-9][0-9., ;]{0,20}\)[ ]?[=<>]))"
+
+# A symbol is no part of a word or number before it: best(38), at(4), don't(3), x.r, Δt, 12.t
+START = re.compile(r"(?<![\w'^])(?<!\w\.)[\[0-9A-Za-zβΔχηωεφϕρ]")
+
+
+def _heads() -> dict[str, re.Pattern[str]]:
+    """For each first character, one pattern whose last group names the kind of symbol."""
+    found: dict[str, list[str]] = {}
+    for kind, initials, pattern in _SYMBOLS:
+        for initial in initials:
+            found.setdefault(initial, []).append(f"(?P<{kind}>{pattern})")
+    return {
+        initial: re.compile("|".join([*patterns, _OTHER])) for initial, patterns in found.items()
+    }
+
+
+HEADS = _heads()
+OTHER_HEAD = re.compile(_OTHER)
+
+# What stands in the brackets after a symbol: (38), [38], {1, 56}, (df = 38), (1, N = 80).
+BRACKETS = re.compile(r"[ \t]{0,12}[(\[{]([^()\[\]{}\n]{1,60})[)\]}]\|?")
+# Degrees of freedom as lost subscripts: t38, t_38, t_{38}, t 38, F1,56; a relation follows.
+BARE_ARGUMENTS = re.compile(
+    r"_?[ ]{0,2}\{?([0-9]{1,7}(?:\.[0-9]{1,6})?(?:[ ]?[,;][ ]?[0-9]{1,7}(?:\.[0-9]{1,6})?)?)\}?"
+    r"(?=[ ]{0,3}[=<>])"
+)
+# "=", "<", ">" once or doubled ("= <", "=="), or the word that prose has in its place.
+RELATION = re.compile(
+    r"[ \t]{0,12}(?:([=<>](?:[ ]?[=<>]){0,2}|:(?![/:]))"
+    r"|(?:values?[ ])?(of|was|is|equals|equal[ ]to)(?![\w]))"
+    r"[ \t]{0,12}"
+)
+NUMBER_HERE = re.compile(rf"[ \t]{{0,12}}({NUMBER})")
+NOT_FINITE = re.compile(
+    r"[-+]?[ ]?(?:nan|inf(?:inity|inite)?|∞|n/?a|missing)(?![\w])", re.IGNORECASE
+)
+# Stars and daggers of significance, one footnote letter or raised number: 2.31**, .45a, .03^1
+MARKS = re.compile(
+    r"[ ]?(?:[*†‡§]{1,4}|\^[*†‡§]{1,4})|\^?[a-f](?![\w]|[ ]?=)|\^[0-9a-f]{1,2}(?![\w.])"
+)
+# What must not follow a value: it would be part of something else.
+TRAILING = re.compile(
+    r"(?P<stuck>(?!ns\b)[\w^])"
+    r"|(?P<more>[.,:/][0-9])"
+    r"|[ ]?(?P<percent>%)"
+    r"|[ ]?(?P<range>(?:-|to[ ]|±|\+/-|\+-)[ ]?[0-9.])"
+    r"|(?P<list>,[ ]?[-+]?[0-9]?\.[0-9]{1,6}(?![0-9]|[ ]?%))"
+    r"|[ ]?(?P<unit>(?:ms|s|sec|secs|seconds?|min|minutes?|h|hours?|days?|weeks?|months?|years?|"
+    r"kg|mg|g|m|cm|mm|km|Hz|°C?)(?![\w])(?![ ]?[=<>(]))"
+    r"|[ ]?(?P<arithmetic>[+*/x^][ ]?[0-9(]|=)"
+)
+CHAINED = re.compile(r"[ ]?[<>]")
+YEAR = re.compile(r"(?:1[89]|20)[0-9]{2}[a-z]?\Z")
+
+INTERVAL = re.compile(
+    rf"[ \t]{{0,4}}[\])]?[,:=]?(?:[ ]?(?:of|was|is|from))?[ ]{{0,2}}[\[({{]?[ ]?({NUMBER})[ ]?"
+    rf"(?:,[ ]|;[ ]?|,(?=[-+.0-9])|to[ ]|and[ ]|\.\.|-)[ ]?({NUMBER})[ ]?[\])}}]?"
+)
+# n = 20; n = 20 and 22; n = 20/22; ns = 20, 22; n = 20 per group
+SIZES = re.compile(
+    r"[ ]?[=:][ ]?([0-9]{1,3}(?:,[0-9]{3}){1,2}(?![0-9])|[0-9]{1,25}(?:[.,][0-9]{1,25})?)"
+    r"(?:(?:[ ]?(?:/|\+|&|and|vs\.?|versus)[ ]?|,[ ]?)"
+    r"(?=[0-9]{1,7}[ ]?(?:$|[\n;,)\[]))([0-9]{1,7}))?"
+    r"(?![0-9.%]|[ ]?%)"
+)
+SIZE_EACH = re.compile(
+    r"[ ]?(?:participants?|people|patients|animals|[Ss]s)?[ ]?"
+    r"(?:per|each|a|in[ ]each|/)[ ]?(?:group|cell|condition|arm)|[ ]each\b"
+)
+COUNT_PAIR = re.compile(
+    r"([0-9]{1,7})(?:[ ]?/[ ]?|[ ](?:of|out[ ]of)[ ])([0-9]{1,7})(?![0-9/.]|,[0-9])"
+    r"(?:[ ]?\([0-9.,]{1,6}[ ]?%\))?[^0-9\n/]{0,60}?"
+    r"\b(?:vs\.?|versus|against|compared[ ](?:with|to))"
+    r"[^0-9\n/]{0,60}(?:[0-9.,]{1,6}[ ]?%[ ]?\()?"
+    r"([0-9]{1,7})(?:[ ]?/[ ]?|[ ](?:of|out[ ]of)[ ])([0-9]{1,7})(?![0-9/.]|,[0-9])"
+    r"(?:[ ]?\([0-9.,]{1,6}[ ]?%\))?"
+)
+PERCENT_PAIR = re.compile(
+    r"([0-9.,]{1,7})[ ]?%[ ](?:of[ ]|\([nN][ ]?=[ ]?)([0-9]{1,7})\)?[^0-9\n%]{0,60}?\b"
+    r"(?:vs\.?|versus|against|compared[ ](?:with|to))[^0-9\n%]{0,60}"
+    r"([0-9.,]{1,7})[ ]?%[ ](?:of[ ]|\([nN][ ]?=[ ]?)([0-9]{1,7})\)?"
+)
+TABLE_2X2 = re.compile(
+    r"2[ ]?x[ ]?2(?:[ ](?:table|counts?))?[ ]?[:=]?[ ]?\[{0,2}([0-9]{1,7})[, ][ ]?([0-9]{1,7})\]?"
+    r"[ ]?[;/,][ ]?\[?([0-9]{1,7})[, ][ ]?([0-9]{1,7})\]{0,2}"
+)
+
+SENTENCE_END = re.compile(r"[.!?][)\]\"']?[ \t]{1,12}(?=[A-Z(\"'])|\n")
+ABBREVIATION = re.compile(r"(?:vs|cf|e\.g|i\.e|resp|Exp|Fig|No|approx|al)\.?\Z")
+WORD = re.compile(r"[^\W\d_][^\W\d_']{0,30}")
+LABEL_WITHIN_LINE = re.compile(r"[;.|][ \t]{0,12}([^;:.|\n]{1,80}):[ \t]{0,12}\Z")
+DESIGN_WORDS = re.compile(
+    r"(?:(?P<paired>[Pp]aired|[Dd]ependent|[Ww]ithin[ -]subjects?|[Mm]atched|"
+    r"[Rr]epeated[ -]measures)"
+    r"|(?P<one>[Oo]ne[ -]sample|[Ss]ingle[ -]sample)"
+    r"|(?P<two>[Ii]ndependent|[Tt]wo[ -]sample|[Bb]etween[ -]subjects?|[Uu]npaired|Welch(?:'s)?))"
+    r"(?:[ -](?:samples?|groups?|means))?(?:[ -]Student(?:'s)?)?"
+    r"(?:[ -]t-?[ -]?tests?,?(?:[ ]?[:(,])?)?[ -]?\Z"
+)
+TAILS_WORDS = re.compile(r"\b(one|1|two|2)[ -]?(?:tailed|sided|tail)\b", re.IGNORECASE)
+AGAINST_WORDS = re.compile(
+    r"(?:contrary|opposite)[ ](?:to[ ])?(?:what[ ](?:was|we)[ ])?(?:the[ ]|our[ ])?"
+    r"(?:prediction|predicted|hypothes|expectation|expected)"
+    r"|opposite[ ](?:direction|sign)|against[ ](?:the[ ]|our[ ])?(?:prediction|hypothes)"
+)
+# Words that may stand between a test and a further statistic of the same test.
+CONNECTORS = frozenset(
+    [
+        "and",
+        "with",
+        "an",
+        "a",
+        "of",
+        "the",
+        "effect",
+        "size",
+        "sizes",
+        "cohen's",
+        "hedges'",
+        "hedges",
+        "g's",
+        "glass's",
+        "corresponding",
+        "to",
+        "two",
+        "one",
+        "tailed",
+        "sided",
+        "corrected",
+        "uncorrected",
+        "adjusted",
+        "bonferroni",
+        "i.e",
+        "ie",
+        "or",
+        "equivalent",
+        "which",
+        "is",
+        "was",
+        "small",
+        "medium",
+        "large",
+        "associated",
+        "partial",
+        "correlation",
+        "pearson's",
+        "pearson",
+        "ci",
+        "confidence",
+        "interval",
+        "test",
+        "independent",
+        "samples",
+        "sample",
+        "p",
+        "t",
+        "f",
+        "mse",
+        "standard",
+        "error",
+        "welch",
+        "student's",
+    ]
+)
+
+# A line break inside a statistic or a sentence; the next line goes on with it.
+_STARTS_OWN = (
+    r"(?:[-•*]?[ ]?[tTFfrRzZUWb](?:[12_]?[ ]?[=<>(\[{]|[ _]?[0-9])"
+    r"|χ|[Cc]hi|X\^?2|[Pp]artial|OR|M[ ]?=|#|\["
+    r"|[^\n:=]{1,80}:[ ]|[^\n]{0,40}[tTFrzZ][ ]?\([0-9])"
+)
+SOFT_BREAK = re.compile(
+    r"(?<=[=<>({])[ \t]{0,8}\n(?=[ \t]{0,20}\S)"
+    r"|(?<=[=<>(\[][ ]-)\n(?=[ \t]{0,20}[0-9.])"
+    rf"|(?<=[,;])[ \t]{{0,8}}\n(?=[ \t]{{0,20}}(?!{_STARTS_OWN})\S)"
+    r"|\n(?=[ \t]{0,20}(?:[=<)]|>[ ]?-?[0-9.]))"
+    r"|(?<=[ \n(][tTFrzZpPdgN])\n(?=[ \t]{0,20}[(\[=<0-9])"
+    rf"|(?<=[a-z]{{3}})\n(?=[ \t]{{0,20}}(?!{_STARTS_OWN})[a-z]{{2,20}}[ ])"
+    r"|(?<=[ \n](?:and|was|for))\n(?=[ \t]{0,20}[a-zA-Z0-9])"
+)

@@ -1,0 +1,119 @@
+"""Statistics in running text, or one a line: grouped, labelled, each with its settings."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from netsize.reported import patterns
+from netsize.reported.assemble import fields_of
+from netsize.reported.faults import Fault
+from netsize.reported.grouping import Group, Line, group_items
+from netsize.reported.items import Item
+from netsize.reported.labels import label_before
+from netsize.reported.records import ReportedResult, Unread
+from netsize.reported.scanner import scan
+from netsize.reported.source import Source
+from netsize.reported.tags import merged
+
+__all__ = ["APART", "SHARED", "marked_place", "read_prose"]
+
+SHARED = "shares a sample with the other results of its label; [sample NAME] parts them"
+APART = "taken as a sample of its own beside others in the text; [sample NAME] joins them"
+
+
+def read_prose(source: Source) -> tuple[list[ReportedResult], list[Unread]]:
+    """Results and unread places of everything outside tables."""
+    results: list[ReportedResult] = []
+    unread: list[Unread] = []
+    for line in group_items(scan(source.text), source.text):
+        built: list[tuple[Group, dict[str, Any]]] = []
+        lost: list[Unread] = []
+        against = source.against_words and patterns.AGAINST_WORDS.search(
+            source.text, line.start, line.end
+        )
+        for group in line.groups:
+            group.faults[:0] = line.faults
+            try:
+                fields = fields_of(
+                    group,
+                    tags=merged(line.settings, group.settings),
+                    defaults=source.defaults,
+                    text=source.text,
+                    line_start=line.start,
+                    against_words=bool(against),
+                )
+            except Fault as fault:
+                lost.append(source.places.unread(*marked_place(group, fault), fault.reason))
+                continue
+            if fields is not None:
+                built.append((group, fields))
+        if line.tags and not built and not lost:
+            lost.append(_lonely(line.tags[0], source))
+        results += _named(built, line, source)
+        unread += lost
+    return results, unread
+
+
+def marked_place(group: Group, fault: Fault) -> tuple[int, int]:
+    """The faulty part: as the fault says, else the symbol that names the test."""
+    if fault.start is not None and fault.end is not None:
+        return fault.start, fault.end
+    item = group.primary
+    return (item.start, item.end) if item is not None else (group.start, group.end)
+
+
+def _lonely(tag: Item, source: Source) -> Unread:
+    reason = tag.fault or (
+        "a setting without a statistic on its line; settings for all lines stand at the top, as in "
+        "defaults: [paired]"
+    )
+    return source.places.unread(*(tag.marked or (tag.start, tag.end)), reason)
+
+
+def _named(
+    built: list[tuple[Group, dict[str, Any]]], line: Line, source: Source
+) -> list[ReportedResult]:
+    names = _labels([group for group, _ in built], line, source)
+    results = []
+    for (group, fields), name in zip(built, names, strict=True):
+        sample = group.settings.get("sample") or line.settings.get("sample")
+        if len(built) > 1 and sample is None:
+            if name is None:
+                fields["notes"] = (*fields.get("notes", ()), APART)
+            elif names.count(name) > 1:
+                fields["notes"] = (*fields.get("notes", ()), SHARED)
+        results.append(
+            source.result(
+                group,
+                fields,
+                label=name,
+                sample=sample,
+                sample_origin="tag" if sample else "assumed",
+            )
+        )
+    return results
+
+
+def _labels(groups: list[Group], line: Line, source: Source) -> list[str | None]:
+    """The label of each group: its own within the line, else that of the group before it."""
+    names: list[str | None] = []
+    for index, group in enumerate(groups):
+        if index == 0:
+            lead = source.text[line.start : _first_statistic(group)]
+            found = label_before(lead)
+            names.append(_words(found, line.start, source))
+            continue
+        within = patterns.LABEL_WITHIN_LINE.search(source.text, groups[index - 1].end, group.start)
+        names.append(source.words(*within.span(1)) if within else names[-1])
+    return names
+
+
+def _words(found: tuple[int, int] | None, offset: int, source: Source) -> str | None:
+    if found is None:
+        return None
+    return source.words(offset + found[0], offset + found[1]) or None
+
+
+def _first_statistic(group: Group) -> int:
+    """Where the first item starts; a number of participants may stand in the label."""
+    return next((i for i in group.items if i.kind != "size"), group.items[0]).start

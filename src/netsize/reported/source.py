@@ -1,0 +1,53 @@
+"""One text on its way through the reader: its forms, its defaults and the labels given so far."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from typing import Any
+
+from netsize.reported.characters import Characters
+from netsize.reported.grouping import Group
+from netsize.reported.labels import Labels
+from netsize.reported.places import Places
+from netsize.reported.records import Origin, ReportedResult
+
+__all__ = ["Source"]
+
+
+@dataclass(frozen=True, slots=True)
+class Source:
+    """`text` is normalised, with comments and soft line breaks blanked; places are unchanged."""
+
+    original: str
+    text: str
+    characters: Characters
+    places: Places
+    defaults: dict[str, Any]
+    against_words: bool
+    labels: Labels = field(default_factory=Labels)
+
+    def words(self, start: int, end: int) -> str:
+        """The original characters of normalised [start, end), blanks joined."""
+        first, last = self.characters.cut(start, end)
+        return " ".join(self.original[first:last].split())
+
+    def result(
+        self,
+        group: Group,
+        fields: dict[str, Any],
+        *,
+        label: str | None,
+        sample: str | None,
+        sample_origin: Origin,
+    ) -> ReportedResult:
+        """The finished record: `label` made unique; the sample is the label unless named."""
+        span = self.places.span(group.start, group.end)
+        unique = self.labels.unique(label)
+        return ReportedResult(
+            label=unique,
+            sample=sample or label or unique,
+            sample_origin=sample_origin,
+            span=span,
+            text=self.places.cut(span),
+            **fields,
+        )
