@@ -25,7 +25,7 @@ _DIAGNOSTICS: tuple[Column, ...] = (
     ("sign of selection", "left"),
     ("statistic", "right"),
     ("p", "right"),
-    ("what it shows, and what it cannot", "left"),
+    ("finding", "left"),
 )
 _WITHOUT: tuple[Column, ...] = (
     ("without", "left"),
@@ -44,6 +44,7 @@ def show_weighing(weighing: Weighing) -> None:
     show_text(_headline(weighing))
     show_text("")
     show_table(_ESTIMATORS, [_estimator_row(weighing, e) for e in weighing.estimators])
+    show_list("Remarks:", _remarks(weighing))
     show_text("")
     show_table(
         _DIAGNOSTICS,
@@ -52,11 +53,12 @@ def show_weighing(weighing: Weighing) -> None:
                 d.label,
                 f"{d.symbol} = {fmt.effect(d.statistic)}" if d.statistic is not None else "-",
                 fmt.p_value(d.p),
-                _sentences(d.finding or d.reason, d.limits),
+                d.finding or d.reason,
             ]
             for d in weighing.diagnostics
         ],
     )
+    show_list("What they can and cannot show:", _limits(weighing))
     if weighing.leave_one_out:
         show_text("")
         show_table(
@@ -184,7 +186,7 @@ def _spread(weighing: Weighing, usable: Sequence[Estimate]) -> list[str]:
     tested = [d for d in weighing.diagnostics if d.p is not None and d.key in _SUSPICIOUS]
     signs = [d for d in tested if d.p is not None and d.p < 0.1]
     if signs:
-        names = _join([d.label[0].lower() + d.label[1:] for d in signs])
+        names = _join([_lower(d.label) for d in signs])
         sentences.append(f"Signs of selective printing (p < .10): {names}.")
     return sentences
 
@@ -224,8 +226,30 @@ def _estimator_row(weighing: Weighing, e: Estimate) -> list[str]:
         fmt.effect(tau),
         "-" if deflation is None or e.key == "as-printed" else f"{deflation:.0%}",
         str(e.used),
-        f"{e.status}: {e.reason}" if e.reason else e.status,
+        e.status,
     ]
+
+
+def _remarks(weighing: Weighing) -> list[str]:
+    """The reasons in the rows."""
+    return _together([(e.label, x) for e in weighing.estimators for x in e.reason.split("; ") if x])
+
+
+def _limits(weighing: Weighing) -> list[str]:
+    """The caution of each diagnostic."""
+    return _together([(d.label, _lower(d.limits)) for d in weighing.diagnostics])
+
+
+def _together(pairs: Sequence[tuple[str, str]]) -> list[str]:
+    """Labels that share a text in front of it, each text once."""
+    labels: dict[str, list[str]] = {}
+    for label, text in pairs:
+        labels.setdefault(text, []).append(label)
+    return [f"{', '.join(names)}: {text}" for text, names in labels.items()]
+
+
+def _lower(sentence: str) -> str:
+    return sentence[0].lower() + sentence[1:]
 
 
 def _deflated(share: float) -> str:
@@ -254,8 +278,3 @@ def _median(values: Sequence[float]) -> float:
 
 def _join(parts: Sequence[str]) -> str:
     return parts[0] if len(parts) == 1 else ", ".join(parts[:-1]) + " and " + parts[-1]
-
-
-def _sentences(*parts: str) -> str:
-    """Fragments as sentences."""
-    return " ".join(p[0].upper() + p[1:] + ("" if p.endswith(".") else ".") for p in parts if p)

@@ -109,7 +109,7 @@ def conditional_likelihood(
     domain : effects searched. sides : which results selection lets through.
     """
     key = "conditional-likelihood" if sides == "predicted" else "conditional-either-sign"
-    label = "Conditional likelihood" + ("" if sides == "predicted" else ", either sign printed")
+    label = "Conditional likelihood" if sides == "predicted" else "Conditional (either sign)"
     used = len(evidence)
     if used == 0:
         return unusable(key, label, level=level, used=0, reason="no exact significant result")
@@ -144,7 +144,7 @@ def conditional_quantiles(
     Their sum is Irwin-Hall at the true effect, which gives an exact interval and, for one result,
     the median-unbiased estimate.
     """
-    key, label, used = "conditional-quantiles", "Uniform conditional p-values", len(evidence)
+    key, label, used = "conditional-quantiles", "Uniform p-values", len(evidence)
     if used == 0:
         return unusable(key, label, level=level, used=0, reason="no exact significant result")
 

@@ -14,7 +14,7 @@ from netsize.synthesis.records import Estimate, Status
 
 __all__ = ["AGREE_BY_LUCK", "confidence_distribution", "symmetric", "unusable"]
 
-AGREE_BY_LUCK = "the results agree better than chance would have it, so the interval is too narrow"
+AGREE_BY_LUCK = "the results agree better than by chance, so the interval is too narrow"
 
 _POINTS = np.concatenate([-np.geomspace(60, 8.1, 20), np.linspace(-8, 8, 321)])
 _POINTS = np.concatenate([_POINTS, np.geomspace(8.1, 60, 20)])

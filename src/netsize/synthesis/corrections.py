@@ -281,18 +281,16 @@ def _clustered(results: Results, settings: Settings) -> bool:
 
 
 CORRECTIONS: dict[str, Correction] = {
-    "unrestricted": Correction("Unrestricted weighted least squares", _unrestricted),
-    "adequately-powered": Correction("Adequately powered results only", _adequately_powered),
+    "unrestricted": Correction("Unrestricted least squares", _unrestricted),
+    "adequately-powered": Correction("Adequately powered only", _adequately_powered),
     "pet": Correction("PET", _pet),
     "peese": Correction("PEESE", _peese),
     "pet-peese": Correction("PET-PEESE", _pet_peese),
     "limit": Correction("Limit meta-analysis", _limit),
-    "trim-and-fill": Correction("Trim and fill, L₀", _trim_and_fill),
-    "trim-and-fill-run": Correction("Trim and fill, R₀", _trim_and_fill_run),
-    "step-function": Correction("Step-function selection model", _step_function),
+    "trim-and-fill": Correction("Trim and fill L₀", _trim_and_fill),
+    "trim-and-fill-run": Correction("Trim and fill R₀", _trim_and_fill_run),
+    "step-function": Correction("Step-function model", _step_function),
     "conditional-likelihood": Correction("Conditional likelihood", _conditional_likelihood),
-    "conditional-either-sign": Correction(
-        "Conditional likelihood, either sign printed", _conditional_either_sign
-    ),
-    "conditional-quantiles": Correction("Uniform conditional p-values", _conditional_quantiles),
+    "conditional-either-sign": Correction("Conditional (either sign)", _conditional_either_sign),
+    "conditional-quantiles": Correction("Uniform p-values", _conditional_quantiles),
 }

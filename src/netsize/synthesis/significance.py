@@ -94,8 +94,8 @@ def significant_shape(
     """
     used = len(evidence)
     limits = _shape_limits(used)
-    skew_names = ("right-skew", "Significant p-values: right skew")
-    flat_names = ("flatness", "Significant p-values: flatter than 33% power")
+    skew_names = ("right-skew", "Right skew of significant p")
+    flat_names = ("flatness", "Flatness of significant p")
     if used == 0:
         none = [
             Diagnostic(

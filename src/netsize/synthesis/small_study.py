@@ -85,13 +85,13 @@ def pet_peese_many(
 def pet(estimates: ArrayLike, null_variances: ArrayLike, *, level: float = 0.95) -> Estimate:
     """Precision-effect test: intercept of the line in the standard error; needs k ≥ 3."""
     line = precision_line(estimates, null_variances, power=1)
-    return _row("pet", "PET", line, np.size(estimates), level, "linear in the standard error")
+    return _row("pet", "PET", line, np.size(estimates), level, "")
 
 
 def peese(estimates: ArrayLike, null_variances: ArrayLike, *, level: float = 0.95) -> Estimate:
     """Precision-effect estimate with standard error: the line in the variance; needs k ≥ 3."""
     line = precision_line(estimates, null_variances, power=2)
-    return _row("peese", "PEESE", line, np.size(estimates), level, "linear in the variance")
+    return _row("peese", "PEESE", line, np.size(estimates), level, "")
 
 
 def pet_peese(estimates: ArrayLike, null_variances: ArrayLike, *, level: float = 0.95) -> Estimate:
@@ -117,10 +117,8 @@ def _row(key: str, label: str, line: Line, used: int, level: float, reason: str)
             used=used,
             reason="all results are equally precise, so there is no trend to fit",
         )
-    if 0 < line.scale < 1:
-        reason += "; " + AGREE_BY_LUCK
-    if used < FEW:
-        reason += f"; unreliable with {number_of_results(used)}"
+    luck = AGREE_BY_LUCK if 0 < line.scale < 1 else ""
+    few = f"unreliable with {number_of_results(used)}" if used < FEW else ""
     return symmetric(
         key,
         label,
@@ -129,5 +127,5 @@ def _row(key: str, label: str, line: Line, used: int, level: float, reason: str)
         df=float(line.df),
         level=level,
         used=used,
-        reason=reason,
+        reason="; ".join(part for part in (reason, luck, few) if part),
     )

@@ -175,7 +175,7 @@ def step_function(
     level: float = 0.95,
 ) -> Estimate:
     """The model as one row; needs k ≥ 3."""
-    key, label, used = "step-function", "Step-function selection model", int(np.size(estimates))
+    key, label, used = "step-function", "Step-function model", int(np.size(estimates))
     if used < 3:
         return unusable(
             key, label, level=level, used=used, reason="three parameters need three results"

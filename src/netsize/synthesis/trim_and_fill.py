@@ -96,7 +96,7 @@ def trim_and_fill(
 ) -> Estimate:
     """Trim and fill as one row; needs k ≥ 3."""
     key = "trim-and-fill" if asymmetry == "L0" else "trim-and-fill-run"
-    label = f"Trim and fill, {'L₀' if asymmetry == 'L0' else 'R₀'}"
+    label = f"Trim and fill {'L₀' if asymmetry == 'L0' else 'R₀'}"
     used = int(np.size(estimates))
     if used < 3:
         return unusable(

@@ -87,7 +87,7 @@ def unrestricted(estimates: ArrayLike, variances: ArrayLike, *, level: float = 0
     """Unrestricted weighted least squares as one row; needs k ≥ 2."""
     return _row(
         "unrestricted",
-        "Unrestricted weighted least squares",
+        "Unrestricted least squares",
         unrestricted_many(estimates, variances),
         level,
         "",
@@ -98,7 +98,7 @@ def adequately_powered(
     estimates: ArrayLike, variances: ArrayLike, *, level: float = 0.95
 ) -> Estimate:
     """The adequately powered subset as one row; falls back on all results, and says so."""
-    key, label = "adequately-powered", "Adequately powered results only"
+    key, label = "adequately-powered", "Adequately powered only"
     powered = adequately_powered_many(estimates, variances)
     number, total = int(powered.number), int(np.size(estimates))
     if number >= 2:

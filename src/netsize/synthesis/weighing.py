@@ -300,7 +300,8 @@ def _notes(results: Results, settings: Settings) -> tuple[str, ...]:
         )
         notes.append(
             f"{results.estimates.size} results come from {results.means.size} samples: {how}, "
-            f"with an assumed correlation of {rho:g} within a sample; the methods that look at "
-            "significance count each result with a smaller weight."
+            f"with an assumed correlation of {rho:g} within a sample; the selection likelihoods "
+            "give each such result a smaller weight, the tests of significant p-values count it in "
+            "full."
         )
     return tuple(notes)
