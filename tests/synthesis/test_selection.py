@@ -368,3 +368,25 @@ def test_shrunken_effects_lie_between_the_study_and_the_mean():
     fit = fit_averaged(evidence, weights=np.ones(5), metric=DIFFERENCE)
     own = 5.5 / evidence[2].scale
     assert float(fit.mean.quantile(0.5)) < float(fit.shrunken[2].quantile(0.5)) < own
+
+
+def test_large_samples_reach_the_normal_step_function_model():
+    """Same maximum as the normal-theory model (Vevea & Hedges 1995), which shares no code."""
+    from netsize.synthesis.step_function import fit_step_function
+
+    rng = np.random.default_rng(21)
+    n = rng.integers(3000, 9000, 60)
+    d = rng.normal(rng.normal(0.035, 0.02, 60), np.sqrt(2 / n))
+    printed = (d * np.sqrt(n / 2) > 1.96) | (rng.random(60) < 0.4)
+    n, d = n[printed], d[printed]
+    evidence = [two_groups(float(x * np.sqrt(m / 2)), int(m)) for x, m in zip(d, n, strict=True)]
+    k = len(evidence)
+    priors = Priors(effect_scale=0.05, heterogeneity_scale=0.025)
+    exact = fit_profile(evidence, weights=np.ones(k), metric=DIFFERENCE, priors=priors)
+    normal = fit_step_function(d, 2 / n)
+    assert 0.05 < normal.weights[1] < 0.95
+    assert exact.estimate == pytest.approx(normal.mean, abs=1e-3)
+    assert exact.heterogeneity == pytest.approx(np.sqrt(normal.tau2), abs=1e-3)
+    assert exact.printing[0] == pytest.approx(normal.weights[1], abs=0.02)
+    of_d = exact.log_likelihood + 0.5 * np.log(n / 2).sum()  # density of d, not of t
+    assert of_d == pytest.approx(normal.log_likelihood, abs=1e-3)
