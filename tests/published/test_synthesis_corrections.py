@@ -88,6 +88,11 @@ def test_adequately_powered_subset(bcg):
     result = adequately_powered(y, v)
     assert result.used == subset.sum() >= 2
     assert (result.estimate, result.se) == pytest.approx((fit.params[0], fit.bse[0]), rel=1e-9)
+    # a mean of .28: standard errors of .099 are adequate, those of .101 are not
+    row = adequately_powered(
+        [0.28] * 3 + [0.28] * 2, np.array([0.099, 0.099, 0.05, 0.101, 0.14]) ** 2
+    )
+    assert row.used == 3
 
 
 def test_limit_meta_analysis_without_heterogeneity_is_a_regression(smoking):
@@ -114,6 +119,11 @@ def test_limit_meta_analysis_from_its_model(bcg):
                              options={"xatol": 1e-12, "fatol": 1e-14, "maxiter": 4000})  # fmt: skip
     expected = best.x[0] + best.x[1] * np.sqrt(result.tau2)
     assert result.estimate == pytest.approx(expected, abs=1e-6)
+    # least squares with known weights: statsmodels' unscaled covariance, by the delta method
+    fit = sm.WLS(y, sm.add_constant(np.sqrt(total)), weights=1 / total).fit()
+    direction = np.array([1.0, np.sqrt(result.tau2)])
+    variance = direction @ fit.normalized_cov_params @ direction
+    assert result.se == pytest.approx(np.sqrt(variance), rel=1e-9)
 
 
 # Recomputed: likelihood re-evaluated by quadrature, optimum verified.

@@ -63,7 +63,7 @@ def weigh(
         bool, typer.Option("--csv", help="Print the estimators as CSV, on the metric and as shown.")
     ] = False,
 ) -> None:
-    """Pool the results, apply every published correction, and look for signs of selection.
+    """Pool the results, apply the published corrections, and look for signs of selection.
 
     Example: netsize weigh literature.txt --heterogeneity paule-mandel
     """

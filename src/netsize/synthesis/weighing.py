@@ -146,7 +146,7 @@ def weigh(
     correlation: float | None = None,
     alpha: float = 0.05,
 ) -> Weighing:
-    """Pool a literature, apply every published correction, and run the diagnostics.
+    """Pool a literature, apply the published corrections, and run the diagnostics.
 
     Parameters
     ----------
