@@ -14,6 +14,7 @@ from __future__ import annotations
 import numpy as np
 from numpy.polynomial.legendre import leggauss
 from numpy.typing import ArrayLike
+from scipy.special import ndtri
 
 from netsize.numerics.arrays import Array, broadcast
 from netsize.numerics.gamma import log_half_step
@@ -87,18 +88,18 @@ def coefficient(r: ArrayLike, n: ArrayLike, probability: ArrayLike) -> Array:
     z = np.arctanh(np.where(valid, r, np.nan))
     n = np.where(valid, n, np.nan)
 
-    def exceeds(theta: Array, z: Array, n: Array, probability: Array) -> Array:
-        # the smaller tail decides, so neither end loses digits
-        return np.where(
-            probability < 0.5,
-            probability - _lower_tail(z, theta, n),
-            _lower_tail(-z, -theta, n) - (1 - probability),
-        )
+    # the smaller tail decides, so neither end loses digits
+    side = np.where(probability < 0.5, 1.0, -1.0)
+    goal = ndtri(np.minimum(probability, 1 - probability))
+
+    def exceeds(theta: Array, z: Array, n: Array, side: Array, goal: Array) -> Array:
+        # in probits, where the tail is nearly linear in θ and false position converges at once
+        return np.asarray(side * (goal - ndtri(_lower_tail(side * z, side * theta, n))))
 
     with np.errstate(all="ignore"):
         # cosh(z-θ) at which a tail is below e^-40, and never beyond e^40
         reach = np.arccosh(np.exp(np.minimum(_DEPTH / (n - 2), _DEPTH))) + 1e-3
-        return np.tanh(increasing_root(exceeds, z - reach, z + reach, z, n, probability))
+        return np.tanh(increasing_root(exceeds, z - reach, z + reach, z, n, side, goal))
 
 
 def _log_constant(n: Array) -> Array:

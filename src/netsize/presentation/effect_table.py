@@ -148,7 +148,8 @@ def _also(row: EffectSize, shown: set[str]) -> str:
 def _legend(table: EffectTable) -> str:
     variance = "variance of Fisher's z; " if table.metric.name == "fisher-z" else ""
     return (
-        f"n: all participants; {variance}interval exact, from the noncentral law of the statistic; p two-sided, "
+        f"n: all participants; {variance}interval from the law of the statistic itself "
+        "(noncentral t, F, χ² or exact r; normal for z and ready-made estimates); p two-sided, "
         "recomputed; weight: share of the inverse variances."
     )
 
