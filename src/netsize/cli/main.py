@@ -17,6 +17,7 @@ import netsize
 from netsize.cli.effects import effects
 from netsize.cli.plan import plan
 from netsize.cli.read import read
+from netsize.cli.solve import solve
 from netsize.cli.sources import sources
 from netsize.cli.weigh import weigh
 from netsize.errors import NetsizeError
@@ -51,7 +52,7 @@ def _options(
     """How many participants, net of publication bias: from pasted statistics to n."""
 
 
-for command in (read, effects, weigh, plan, sources):
+for command in (read, effects, weigh, plan, solve, sources):
     app.command()(command)
 
 

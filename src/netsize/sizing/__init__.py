@@ -16,6 +16,7 @@ from netsize.sizing.chances import (
     smallest_detectable,
 )
 from netsize.sizing.designs import DESIGNS, Design, EffectMetric, design_named
+from netsize.sizing.distributions import normal_effects
 from netsize.sizing.records import Abilities, Cost, Goal, Sizing
 from netsize.sizing.solving import solve
 from netsize.sizing.study import Modifiers, Study, make_study
@@ -36,6 +37,7 @@ __all__ = [
     "expected_power",
     "expected_power_ceiling",
     "make_study",
+    "normal_effects",
     "power",
     "power_assurance",
     "smallest_detectable",

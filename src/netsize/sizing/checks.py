@@ -22,8 +22,11 @@ def numbers(name: str, values: ArrayLike) -> Array:
         array = np.asarray(values, dtype=float)
     except (TypeError, ValueError):
         raise SettingError(option(name), f"{values!r} is not a number") from None
-    if array.size == 0 or not np.all(np.isfinite(array)):
-        raise SettingError(option(name), "expected finite numbers, at least one")
+    if array.size == 0:
+        raise SettingError(option(name), "nothing given; expected at least one number")
+    if not np.all(np.isfinite(array)):
+        bad = float(array[~np.isfinite(array)].flat[0])
+        raise SettingError(option(name), f"{bad:g} is not a finite number")
     return array
 
 

@@ -9,6 +9,7 @@ from netsize.errors import SettingError
 from netsize.numerics.arrays import Array, BoolArray, IntArray
 from netsize.numerics.grid import GridDistribution
 from netsize.numerics.search import smallest_integer
+from netsize.sizing.checks import between, numbers
 from netsize.sizing.search import detectable_effect
 from netsize.sizing.study import LARGEST, Study
 
@@ -16,9 +17,18 @@ __all__ = [
     "chance_of_power",
     "expected_power",
     "expected_power_ceiling",
+    "normal_effects",
     "on_own_scale",
     "units_for_expected_power",
 ]
+
+
+def normal_effects(*, mean: float, sd: float) -> GridDistribution:
+    """A normal distribution of effects, cut at six standard deviations."""
+    numbers("effect", mean)
+    between("effect_sd", sd, 0, np.inf)
+    scores = np.linspace(-6, 6, 2401)
+    return GridDistribution.from_weights(mean + sd * scores, np.exp(-scores * scores / 2))
 
 
 def on_own_scale(

@@ -45,7 +45,6 @@ def solve(
     assurance: float | None = None,
     n: ArrayLike | None = None,
     at_most: ArrayLike | None = None,
-    spend: ArrayLike | None = None,
     cost_per: float | None = None,
     fixed_cost: float = 0.0,
     level: float = 0.95,
@@ -65,8 +64,9 @@ def solve(
     half_width : wanted half-width of the interval at confidence `level`, on the design's own scale:
         the expected one, or with `assurance` the one not exceeded with that probability.
     n : the study has n participants in the smaller group (cell, sample), recruited.
-        at_most : it recruits no more than this many in all. spend : it costs no more than this.
-        `power` is then that of the smallest detectable effect. Broadcast with the effects.
+        at_most : it recruits no more than this many in all; with `cost_per`, it costs no more than
+        this much. `power` is then that of the smallest detectable effect. Broadcast with the
+        effects.
     cost_per, fixed_cost : price of a participant recruited, and of the study.
     metric : scale of the effects, the design's own where left out.
     settings : options of the design (`ratio`, `groups`, ...) and modifiers (`alpha`, `sides`,
@@ -86,10 +86,10 @@ def solve(
     if assurance is not None:
         between("assurance", assurance, 0, 1)
     case = _Case(study, study.metric(metric), _cost(cost_per, fixed_cost), level)
-    _one_of(expected_power=expected_power, half_width=half_width, n=n, at_most=at_most, spend=spend)
-    if n is not None or at_most is not None or spend is not None:
+    _one_of(expected_power=expected_power, half_width=half_width, n=n, at_most=at_most)
+    if n is not None or at_most is not None:
         _unused("assurance", assurance, "it belongs to a power or half-width to be reached")
-        units = units_of(study, n=n, at_most=at_most, spend=spend, cost=case.cost)
+        units = units_of(study, n=n, at_most=at_most, cost=case.cost)
         return _given(case, effect, units, _power(power))
     if expected_power is not None:
         _unused("power", power, "name either --power or --expected-power")
@@ -124,10 +124,9 @@ def units_of(
     *,
     n: ArrayLike | None = None,
     at_most: ArrayLike | None = None,
-    spend: ArrayLike | None = None,
     cost: Cost | None = None,
 ) -> Array:
-    """The units of a study given by participants in its smaller group, in all, or by its price."""
+    """The units of a study given by participants in its smaller group, in all, or by its cost."""
     m = study.modifiers
     if n is not None:
         given = whole("n", n, 1, LARGEST)
@@ -137,20 +136,17 @@ def units_of(
             units = (given * (1 - m.loss) + 1e-9) // 1
         _enough(study, units, "--n", "in the smaller group")
         return np.asarray(units)
-    if spend is not None:
-        if cost is None or cost.each == 0:
-            raise SettingError("--cost-per", "needed to turn --spend into participants")
-        money = between("spend", spend, 0, np.inf)
-        total = (money - cost.fixed + 1e-9) // cost.each
-    else:
-        total = whole("at_most", 0 if at_most is None else at_most, 1, LARGEST)
+    limit = between("at_most", 0 if at_most is None else at_most, 0, np.inf)
+    if cost is not None and cost.each > 0:
+        limit = (limit - cost.fixed) / cost.each
+    total = np.clip(np.floor(limit + 1e-9), 0, LARGEST)
 
     def exceeds(units: Array, total: Array) -> BoolArray:
         return np.asarray(study.recruited(units.astype(float)).sum(axis=0) > total)
 
     beyond, _ = smallest_integer(exceeds, total, first=1, last=2 * LARGEST, guess=total)
     units = beyond.astype(float) - 1
-    _enough(study, units, "--at-most" if spend is None else "--spend", "in the smaller group")
+    _enough(study, units, "--at-most", "in the smaller group")
     return units
 
 

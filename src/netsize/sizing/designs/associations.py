@@ -124,6 +124,7 @@ class Regression(Design):
     name: ClassVar[str] = "regression"
     title: ClassVar[str] = "increment of R² in a regression, F test"
     group_word: ClassVar[str] = "sample"
+    degree: ClassVar[int] = 2
 
     tested_predictors: int = 1
     predictors: int | None = None

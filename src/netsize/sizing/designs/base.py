@@ -53,6 +53,7 @@ class Design(ABC):
     title: ClassVar[str]
     group_word: ClassVar[str] = "group"  # what one entry of `sizes` is
     smallest: ClassVar[int] = 2  # of the group searched over
+    degree: ClassVar[int] = 1  # the effect is proportional to this power of the noncentrality
 
     @property
     def null(self) -> float:
