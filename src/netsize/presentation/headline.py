@@ -5,7 +5,7 @@ from __future__ import annotations
 from netsize.planning.plan import Plan
 from netsize.presentation.format import count, counts, effect, ordinal, percent
 
-__all__ = ["headline"]
+__all__ = ["headline", "planned", "value_in_words"]
 
 
 def headline(plan: Plan) -> str:
@@ -28,8 +28,8 @@ def headline(plan: Plan) -> str:
 
 def _power(plan: Plan) -> str:
     return (
-        f"Plan for {_participants(plan)}: {percent(plan.settings.power)} power at "
-        f"{_value(plan)}, {_basis(plan)}."
+        f"Plan for {planned(plan)}: {percent(plan.settings.power)} power at "
+        f"{_value(plan)}, {value_in_words(plan)}."
     )
 
 
@@ -37,16 +37,16 @@ def _precision(plan: Plan) -> str:
     s = plan.settings
     kept = f"with probability {percent(s.assurance)}" if s.assured else "on average"
     return (
-        f"Plan for {_participants(plan)}: the {percent(s.level)} interval of the effect reaches at "
-        f"most {effect(s.half_width)} to either side {kept} at {_value(plan)}, {_basis(plan)}."
+        f"Plan for {planned(plan)}: the {percent(s.level)} interval of the effect reaches at "
+        f"most {effect(s.half_width)} to either side {kept} at {_value(plan)}, {value_in_words(plan)}."
     )
 
 
 def _budget(plan: Plan) -> str:
     row, naive = plan.row("planning-value"), plan.row("as-printed")
     text = (
-        f"The budget pays for {_participants(plan)}: power {percent(row.power or 0.0)} at "
-        f"{_value(plan)}, {_basis(plan)}"
+        f"The budget pays for {planned(plan)}: power {percent(row.power or 0.0)} at "
+        f"{_value(plan)}, {value_in_words(plan)}"
     )
     if naive.power is not None:
         text += (
@@ -89,7 +89,7 @@ def _no_finite_size(plan: Plan) -> str:
     return text
 
 
-def _basis(plan: Plan) -> str:
+def value_in_words(plan: Plan) -> str:
     """What the planning value is, in words."""
     if plan.answer.from_smallest:
         return "the smallest effect of interest"
@@ -112,7 +112,8 @@ def _value(plan: Plan) -> str:
     return f"{plan.metric.symbol} = {effect(plan.answer.value)}"
 
 
-def _participants(plan: Plan) -> str:
+def planned(plan: Plan) -> str:
+    """The size in words, with its groups and how many to recruit where that differs."""
     sized = plan.answer.sized
     groups = sized.n_per_group or ()
     text = f"{count(sized.n_total)} participants"
