@@ -275,6 +275,10 @@ def test_effect_free_errors_make_no_slope_of_their_own():
     for key in ("pet", "peese", "pet-peese", "limit"):
         assert rows[key].estimate is None
         assert "equally precise" in rows[key].reason
+    diagnostics = {d.key: d for d in netsize.weigh(CASES["all significant"]).diagnostics}
+    for key in ("regression-asymmetry", "rank-asymmetry"):
+        assert diagnostics[key].statistic is None
+        assert "equally precise" in diagnostics[key].reason
 
 
 def test_no_sign_no_negative_effects():

@@ -6,10 +6,13 @@ import json
 
 import numpy as np
 import pytest
+from hypothesis import given, settings
+from hypothesis import strategies as st
 
 import netsize
 from netsize.errors import EvidenceError
 from netsize.presentation.weighing import paragraph
+from netsize.synthesis.corrections import CORRECTIONS
 
 SIX = """A: t(38) = 2.3
 B: t(58) = 2.5
@@ -152,3 +155,23 @@ def test_diagnostics_speak_to_their_size():
         assert "6 results" in few[key].limits
         assert few[key].limits != many[key].limits
     assert all(d.limits for d in few.values())
+
+
+@given(
+    results=st.lists(
+        st.tuples(st.integers(3, 400), st.floats(-8, 8), st.sampled_from(["", " [sample s]"])),
+        min_size=1,
+        max_size=6,
+    ),
+    dependence=st.sampled_from(["composites", "clustered"]),
+)
+@settings(deadline=None, max_examples=15)
+def test_any_literature_gives_whole_tables(results, dependence):
+    lines = [f"S{i}: t({df}) = {t:.2f}{tag}" for i, (df, t, tag) in enumerate(results)]
+    weighing = netsize.weigh("\n".join(lines), dependence=dependence)
+    json.dumps(weighing.to_dict(), allow_nan=False)
+    assert len(weighing.corrections) == len(CORRECTIONS)
+    assert paragraph(weighing).endswith(".")
+    for e in weighing.estimators:
+        if e.estimate is not None and e.low is not None:
+            assert e.low - 1e-9 <= e.estimate <= e.high + 1e-9
