@@ -21,13 +21,17 @@ BLOCK = re.compile(r"```console\n\$ (netsize [^\n]*)\n(.*?)```", re.DOTALL)
 
 
 def _output(command: str) -> str:
-    """What a command prints, run from the repository's root; `| head -n N` is understood."""
-    command, _, head = command.partition(" | head -n ")
+    """What a command prints, run from the repository's root, whole or its head or tail."""
+    command, _, part = command.partition(" | ")
     out = io.StringIO()
     with redirect_stdout(out):
         assert main(shlex.split(command)[1:]) == 0
     lines = out.getvalue().splitlines()
-    return "\n".join(lines[: int(head)] if head else lines) + "\n"
+    if part.startswith("head -n "):
+        lines = lines[: int(part.removeprefix("head -n "))]
+    elif part.startswith("tail -n "):
+        lines = lines[-int(part.removeprefix("tail -n ")) :]
+    return "\n".join(lines) + "\n"
 
 
 def _blocks() -> list[tuple[str, str]]:
