@@ -30,6 +30,8 @@ def test_tables_and_paragraph(source, capsys):
     for diagnostic in weighing.diagnostics:
         assert diagnostic.label in out
     assert "corrections that run" in out
+    assert "I² = " in out
+    assert "expected in [" in out
     assert "without" in out
 
 

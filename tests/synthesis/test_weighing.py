@@ -44,6 +44,8 @@ def test_json(weighing):
         "selection-ratio",
     }  # fmt: skip
     assert len(record["leave_one_out"]) == 6
+    low, high = record["heterogeneity"]["tau2_low"], record["heterogeneity"]["tau2_high"]
+    assert low <= record["pooled"]["tau2"] <= high
 
 
 def test_infinite_limits_are_null():

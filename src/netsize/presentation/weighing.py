@@ -42,6 +42,8 @@ _SUSPICIOUS = {"regression-asymmetry", "rank-asymmetry", "excess-significance", 
 def show_weighing(weighing: Weighing) -> None:
     """Print the estimators, the diagnostics, leave-one-out, what is left out, and the paragraph."""
     show_text(_headline(weighing))
+    if weighing.pooled.tau2 is not None:
+        show_text(_between(weighing))
     show_text("")
     show_table(_ESTIMATORS, [_estimator_row(weighing, e) for e in weighing.estimators])
     show_list("Remarks:", _remarks(weighing))
@@ -123,6 +125,26 @@ def _headline(weighing: Weighing) -> str:
     if weighing.results == 1:
         return f"{start} small-sample corrected {mean}, {level} interval {interval}."
     return f"{start} pooled with random effects {mean}, {level} interval {interval}."
+
+
+def _between(weighing: Weighing) -> str:
+    """Heterogeneity in a sentence."""
+    pooled = weighing.pooled
+    low, high = (None if x is None else math.sqrt(x) for x in (pooled.tau2_low, pooled.tau2_high))
+    scale = " on Fisher z" if weighing.metric.name == "fisher-z" else ""
+    text = (
+        f"Between studies tau{scale} is {fmt.effect(math.sqrt(pooled.tau2 or 0.0))}, "
+        f"{fmt.percent(pooled.level)} interval {fmt.interval(low, high)}; "
+        f"Q({pooled.used - 1}) = {fmt.effect(pooled.q)}"
+    )
+    if pooled.i2 is not None:
+        text += f", I² = {fmt.percent(pooled.i2)}, H² = {fmt.effect(pooled.h2)}"
+    if pooled.prediction_low is None:
+        return f"{text}."
+    expected = fmt.interval(
+        weighing.shown(pooled.prediction_low), weighing.shown(pooled.prediction_high)
+    )
+    return f"{text}. Without correction a new study's effect would be expected in {expected}."
 
 
 def _agreement(weighing: Weighing, usable: Sequence[Estimate]) -> str:

@@ -52,7 +52,7 @@ class Pooled:
     mean, se, low, high, level : mean effect, standard error behind the interval, the interval.
     df : degrees of freedom of the interval (inf: normal).
     tau2, tau2_low, tau2_high : between-study variance and its Q-profile interval; None for k < 2.
-    q, i2, h2 : Cochran's Q on used - 1 degrees of freedom; I² = max(0, 1 - df/Q) and H² = Q/df
+    q, i2, h2 : Cochran's Q on used - 1 degrees of freedom; I² = max(0, 1 - df/Q) and H² = max(1, Q/df)
         (Higgins & Thompson 2002); None for k < 2.
     prediction_low, prediction_high : where the effect of a new study is expected, t on k - 2
         degrees of freedom (Higgins, Thompson & Spiegelhalter 2009); None for k < 3.
@@ -139,8 +139,8 @@ def pool_many(
         enough = k >= 3
         reach = quantile((1 + level) / 2, np.where(enough, k - 2, 1.0)) * np.sqrt(tau2 + wald)
         reach = np.where(enough, reach, np.nan)
-        h2 = q / (k - 1)
-        i2 = np.where(q > 0, np.maximum(0.0, 1 - 1 / h2), np.where(q == 0, 0.0, np.nan))
+        h2 = np.maximum(1.0, q / (k - 1))
+        i2 = 1 - 1 / h2
     return PooledMany(
         mean, se, df, mean - half, mean + half, tau2, q, i2, h2, mean - reach, mean + reach, k,
         converged,

@@ -93,6 +93,11 @@ class Weighing:
             "samples": self.samples,
             "significant": self.significant,
             "pooled": self.pooled.to_dict(),
+            "heterogeneity": {
+                "tau2_low": self.pooled.tau2_low,
+                "tau2_high": self.pooled.tau2_high,
+                "h2": self.pooled.h2,
+            },
             "estimators": [e.to_dict() for e in self.estimators],
             "shown": [
                 {
