@@ -52,7 +52,7 @@ class Pooled:
     mean, se, low, high, level : mean effect, standard error behind the interval, the interval.
     df : degrees of freedom of the interval (inf: normal).
     tau2, tau2_low, tau2_high : between-study variance and its Q-profile interval; None for k < 2.
-    q, i2, h2 : Cochran's Q on used - 1 degrees of freedom; I² = max(0, 1 - df/Q) and H² = max(1, Q/df)
+    q, i2, h2 : Cochran's Q on used - 1 degrees of freedom; H² = max(1, Q/df) and I² = 1 - 1/H²
         (Higgins & Thompson 2002); None for k < 2.
     prediction_low, prediction_high : where the effect of a new study is expected, t on k - 2
         degrees of freedom (Higgins, Thompson & Spiegelhalter 2009); None for k < 3.
