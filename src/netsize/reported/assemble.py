@@ -5,7 +5,9 @@ from __future__ import annotations
 from typing import Any
 
 from netsize.reported import patterns
-from netsize.reported.families import Context, also, family_fields
+from netsize.reported.effect_names import also
+from netsize.reported.families import family_fields
+from netsize.reported.family_parts import Context
 from netsize.reported.faults import Fault
 from netsize.reported.grouping import Group
 from netsize.reported.records import Origin, Printed
@@ -23,13 +25,13 @@ def fields_of(
     tags: Settings,
     defaults: Settings,
     text: str,
-    line_start: int,
+    begin: int,
     against_words: bool = False,
 ) -> dict[str, Any] | None:
     """Fields of the result in `group` except label, sample and place; None where it holds none.
 
     `tags` are the settings of the line and of this statistic, `defaults` those of the file;
-    `text` is the normalised text, for the words before the symbol.
+    `text` is the normalised text, whose words from `begin` on may tell the design.
     """
     if group.faults:
         item = group.faults[0]
@@ -40,7 +42,7 @@ def fields_of(
         sizes=sizes_of(group, tags, defaults),
         design=design,
         design_origin=design_origin,
-        preceding=_preceding_design(group, text, line_start),
+        preceding=_preceding_design(group, text, begin),
     )
     fields = family_fields(context)
     if fields is None:
@@ -65,14 +67,15 @@ def _design(tags: Settings, defaults: Settings) -> tuple[str | None, Origin]:
     return None, "assumed"
 
 
-def _preceding_design(group: Group, text: str, line_start: int) -> str | None:
+def _preceding_design(group: Group, text: str, begin: int) -> str | None:
     item = group.primary
-    if item is None or item.kind != "t" or item.start - line_start < 3:
+    if item is None or item.kind not in ("t", "F") or item.start - begin < 3:
         return None
-    before = text[max(line_start, item.start - 50) : item.start]
-    if not before[-2:].strip(" (,:-"):
-        return None
-    words = patterns.DESIGN_WORDS.search(before)
+    before = text[max(begin, item.start - 100) : item.start]
+    words = nearer = patterns.DESIGN_WORDS.search(before)
+    while nearer:
+        words = nearer
+        nearer = patterns.DESIGN_WORDS.search(before, nearer.start() + 1)
     if words is None:
         return None
     return "paired" if words["paired"] else "one-sample" if words["one"] else "two-groups"
@@ -112,8 +115,6 @@ def _set_direction(
         said, origin = True, "printed"
     if said is None:
         fields["direction"], fields["direction_origin"] = 1, "printed" if negative else "assumed"
-        if signed and not negative and value is not None:
-            fields["direction_origin"] = "printed"
         return
     fields["direction"] = 1 if bool(said) == negative else -1
     fields["direction_origin"] = origin

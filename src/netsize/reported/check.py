@@ -9,17 +9,15 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Literal, TypeAlias
 
-from scipy.special import chdtrc, fdtrc, ndtr, stdtr
-
+from netsize.reported.implied import Range, df_of, effect_candidates, p_range, rounding_range
 from netsize.reported.records import Printed, ReportedResult
 
-__all__ = ["Finding", "FindingKind", "Range", "check", "p_range", "rounding_range"]
+__all__ = ["Finding", "FindingKind", "check"]
 
 FindingKind: TypeAlias = Literal["p", "effect", "df", "means"]
-Range: TypeAlias = tuple[float, float]
 
 _USUAL_CUT = 0.05
 _TINY = 1e-12
@@ -61,82 +59,6 @@ def check(result: ReportedResult) -> tuple[Finding, ...]:
     )
 
 
-def rounding_range(number: Printed) -> Range:
-    """All values that round to the printed one, ends included; an inequality is open-ended."""
-    if number.relation == "<":
-        return -math.inf, number.value
-    if number.relation == ">":
-        return number.value, math.inf
-    half = 0.5 * 10.0 ** -(number.decimals or 0) if number.decimals is not None else 0.0
-    return number.value - half, number.value + half
-
-
-def p_range(result: ReportedResult, df: tuple[float, ...] | None = None) -> Range | None:
-    """The p-values that the printed statistic allows, by the result's tails; None without one.
-
-    t: 2 P(T_df ≥ |t|); r through t = r √(df / (1 - r²)); F, χ²: upper tail; z: 2 P(Z ≥ |z|).
-    One-tailed t, r and z: the tail on the predicted side. `df` replaces the printed one.
-    """
-    if result.value is None or result.family not in ("t", "f", "r", "z", "chi2", "coefficient"):
-        return None
-    df = df if df is not None else _df_of(result)
-    if df is None:
-        return None
-    ends = _statistic_range(result)
-    values = [_tail(result, end, df) for end in ends]
-    if ends[0] < 0 < ends[1] and result.family not in ("f", "chi2") and result.tails == 2:
-        values.append(1.0)
-    return min(values), max(values)
-
-
-def _df_of(result: ReportedResult) -> tuple[float, ...] | None:
-    if result.family == "z":
-        return ()
-    if result.df:
-        return result.df
-    if result.family == "r" and result.n and sum(result.n) > 2:
-        return (sum(result.n) - 2.0,)
-    return None
-
-
-def _statistic_range(result: ReportedResult) -> Range:
-    assert result.value is not None
-    printed = Printed(result.value, result.relation, result.decimals)
-    if result.family == "coefficient":
-        beside = dict(result.also).get("t")
-        if beside is not None:
-            printed = beside
-        elif result.standard_error:
-            low, high = (end / result.standard_error for end in rounding_range(printed))
-            return low, high
-    low, high = rounding_range(printed)
-    if result.family in ("f", "chi2"):
-        return max(low, 0.0), max(high, 0.0)
-    if result.family == "r":
-        return max(low, -1 + _TINY), min(high, 1 - _TINY)
-    if result.relation == "<" and result.value > 0:
-        low = 0.0 if result.tails == 2 else low  # "t < 1" speaks of the size of t
-    return low, high
-
-
-def _tail(result: ReportedResult, value: float, df: tuple[float, ...]) -> float:
-    family = result.family
-    if math.isinf(value) and family not in ("f", "chi2"):
-        toward = value * result.direction > 0
-        return 0.0 if result.tails == 2 or toward else 1.0
-    if family == "f":
-        upper = float(fdtrc(df[0], df[1], value)) if math.isfinite(value) else 0.0
-        return upper if result.tails == 2 else upper / 2
-    if family == "chi2":
-        upper = float(chdtrc(df[0], value)) if math.isfinite(value) else 0.0
-        return upper if result.tails == 2 or df[0] != 1 else upper / 2
-    if family == "r":
-        value = value * math.sqrt(df[0] / (1 - value * value))
-    size = abs(value) if result.tails == 2 else result.direction * value
-    upper = float(ndtr(-size)) if family == "z" else float(stdtr(df[0], -size))
-    return 2 * upper if result.tails == 2 else upper
-
-
 # --- p against the statistic ---------------------------------------------------------------------
 
 
@@ -152,7 +74,7 @@ def _check_p(result: ReportedResult) -> Iterator[Finding]:
     statistic = _statistic_text(result)
     message = (
         f"p is printed as {_number(result.p)}, but {statistic} gives p = {_range(implied)}"
-        f"{' (one-tailed)' if result.tails == 1 else ''}; {_what_would_agree(result, cut)}"
+        f"{' (one-tailed)' if result.tails == 1 else ''}; {_what_would_agree(result, implied, cut)}"
     )
     if changes:
         message += f". The two lie on opposite sides of {_plain(cut)}"
@@ -172,26 +94,31 @@ def _side(ends: Range, cut: float) -> int:
     return 1 if ends[1] <= cut + _TINY else -1 if ends[0] >= cut - _TINY else 0
 
 
-def _what_would_agree(result: ReportedResult, cut: float) -> str:
+def _what_would_agree(result: ReportedResult, implied: Range, cut: float) -> str:
     assert result.p is not None
     found: list[str] = []
+    slipped = Printed(result.p.value / 10, result.p.relation, (result.p.decimals or 0) + 1)
+    exact = result.p.relation == "="
+    if exact and result.p.value > 0 and _agree(implied, slipped):
+        found.append(f"p {_number(slipped, sign=True)}, a slipped decimal point,")
+    flipped = p_range(replace(result, direction=-result.direction))
+    if result.tails == 1 and flipped is not None and _agree(flipped, result.p):
+        found.append("the other direction")
     other = _with_tails(result, 1 if result.tails == 2 else 2)
     if other is not None and _agree(other, result.p):
         found.append("a one-tailed test" if result.tails == 2 else "a two-tailed test")
-    for df in _df_typos(result):
-        implied = p_range(result, df)
-        if implied is not None and _agree(implied, result.p):
+    for df in _df_typos(result) if exact else ():
+        with_df = p_range(result, df)
+        if with_df is not None and _agree(with_df, result.p):
             found.append(f"df = {', '.join(_plain(d) for d in df)} instead")
             break
     if result.p.relation == "=" and result.p.value == cut:
-        found.append(f"p < {_plain(cut)}" if _side(p_range(result) or (0, 1), cut) > 0 else "")
+        found.append(f"p < {_plain(cut)}" if _side(implied, cut) > 0 else "")
     found = [f for f in found if f]
     return f"{' or '.join(found)} would agree" if found else "nothing simple would make them agree"
 
 
 def _with_tails(result: ReportedResult, tails: Literal[1, 2]) -> Range | None:
-    from dataclasses import replace
-
     if result.family == "chi2" and result.df != (1.0,):
         return None
     if result.family == "f" and result.df[:1] != (1.0,):
@@ -201,7 +128,7 @@ def _with_tails(result: ReportedResult, tails: Literal[1, 2]) -> Range | None:
 
 def _df_typos(result: ReportedResult) -> Iterator[tuple[float, ...]]:
     """Slips of one key in the df: n for df, a lost, doubled, extra or swapped digit."""
-    df = _df_of(result)
+    df = df_of(result)
     if not df:
         return
     if result.family == "r":
@@ -231,7 +158,7 @@ def _check_effects(result: ReportedResult) -> Iterator[Finding]:
     if not result.df:
         return
     for name, printed in result.also:
-        candidates = _effect_candidates(result, name)
+        candidates = effect_candidates(result, name)
         if not candidates or printed.relation != "=":
             continue
         slack = 0.5 * 10.0 ** -(printed.decimals if printed.decimals is not None else 2)
@@ -265,71 +192,6 @@ def _expected_design(result: ReportedResult) -> str | None:
     if result.design in ("paired", "one-sample"):
         return "paired"
     return "two groups" if result.design == "two-groups" else None
-
-
-def _effect_candidates(result: ReportedResult, name: str) -> list[tuple[str, float, float]]:
-    """(design in words, low, high): sizes of the effect that the rounded statistic allows."""
-    assert result.value is not None
-    low, high = rounding_range(Printed(abs(result.value), "=", result.decimals))
-    low = max(low, 0.0)
-    error = result.df[-1]
-    if result.family == "f":
-        if result.df[0] != 1:
-            return _variance_shares(name, low, high, result.df[0], error)
-        shares = _variance_shares(name, low, high, 1.0, error)
-        if shares:
-            return shares
-        low, high = math.sqrt(low), math.sqrt(high)
-    elif name.startswith(("partial-", "eta2", "epsilon2", "omega2")):
-        return _variance_shares(name, low * low, high * high, 1.0, error)
-    if name in ("d", "g"):
-        return _mean_differences(result, low, high, error)
-    if name == "dz":
-        return [
-            ("a paired or one-sample test", low / math.sqrt(error + 1), high / math.sqrt(error + 1))
-        ]
-    if name in ("r", "phi") and result.family == "t":
-        return [("", low / math.sqrt(low * low + error), high / math.sqrt(high * high + error))]
-    return []
-
-
-def _mean_differences(
-    result: ReportedResult, low: float, high: float, error: float
-) -> list[tuple[str, float, float]]:
-    """d from t: t √(1/n₁ + 1/n₂), with equal groups 2t/√N or 2t/√df; t/√n for pairs.
-
-    Papers do not say whether their d carries the small-sample factor (about 1 - 3/(4 df - 1)), so
-    either passes.
-    """
-    shrunk = 1 - 3 / (4 * error - 1) if error > 1 else 0.5
-    if len(result.n) == 2:
-        scale = math.sqrt(1 / result.n[0] + 1 / result.n[1])
-        two = (low * scale * shrunk, high * scale)
-    else:
-        scale = 2 / math.sqrt(error + 2)
-        two = (low * scale * shrunk, high * 2 / math.sqrt(error))
-    n = error + 1
-    pairs = (low / math.sqrt(n) * shrunk, high / math.sqrt(error))
-    return [("two groups", *two), ("a paired or one-sample test", *pairs)]
-
-
-def _variance_shares(
-    name: str, low: float, high: float, df1: float, df2: float
-) -> list[tuple[str, float, float]]:
-    """Partial η² = df₁F/(df₁F+df₂); ε² and ω² with F - 1 above; plain η² is at most the partial."""
-
-    def share(f: float, extra: float, less: float) -> float:
-        return df1 * (f - less) / (df1 * f + df2 + extra)
-
-    if name == "partial-eta2":
-        return [("", share(low, 0, 0), share(high, 0, 0))]
-    if name in ("eta2", "generalized-eta2"):
-        return [("", 0.0, share(high, 0, 0))]
-    if name == "partial-omega2":
-        return [("", share(low, 1, 1), share(high, 1, 1))]
-    if name in ("epsilon2", "partial-epsilon2"):
-        return [("", share(low, 0, 1), share(high, 0, 1))]
-    return []
 
 
 # --- df against n, means against the statistic ---------------------------------------------------
@@ -367,6 +229,9 @@ def _expected_df(result: ReportedResult, total: int) -> tuple[float, float, str]
         return total - 1.0, total - 1.0, f"a {result.design} test"
     if result.design == "correlation":
         return 1.0, total - 2.0, "a regression coefficient"
+    if result.design == "two-groups" and len(result.n) == 1 and result.family == "t":
+        low = total - 2.0 if result.df[-1] == int(result.df[-1]) else 1.0
+        return low, total - 2.0, "a test of two groups"
     if len(result.n) == 2 and result.family == "t":
         if result.df[-1] != int(result.df[-1]):
             return min(result.n) - 1.0, total - 2.0, "Welch's test"
@@ -403,13 +268,14 @@ def _statistic_text(result: ReportedResult) -> str:
     return f"{symbol}{df} {result.relation} {_plain(result.value or 0.0)}"
 
 
-def _number(number: Printed) -> str:
+def _number(number: Printed, *, sign: bool = False) -> str:
     digits = f"{number.value:.{number.decimals}f}" if number.decimals else f"{number.value:g}"
-    return digits if number.relation == "=" else f"{number.relation} {digits}"
+    digits = digits.removeprefix("0") if 0 < number.value < 1 else digits
+    return digits if number.relation == "=" and not sign else f"{number.relation} {digits}"
 
 
 def _range(ends: Range) -> str:
-    low, high = (f"{end:.3f}" if end >= 0.0005 else "<.001" for end in ends)
+    low, high = (f"{end:.3f}".removeprefix("0") if end >= 0.0005 else "< .001" for end in ends)
     return low if low == high else f"{low} to {high}"
 
 

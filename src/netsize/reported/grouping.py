@@ -8,6 +8,7 @@ statistic before it, or to the whole line where it stands before the first.
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterable, Iterator
 from dataclasses import dataclass, field
 from typing import Any
@@ -19,6 +20,7 @@ from netsize.reported.tags import merged
 __all__ = ["Group", "Line", "group_items"]
 
 _LONGEST_GAP = 100
+_STOP_BEFORE = re.compile(r"(?<!vs)[.!?][)\]\"']?[ \t]{1,12}\Z")
 _MOST_ITEMS = 40  # no test comes with more numbers; keeps the time linear
 # kinds of which a group may hold several
 _MANY = frozenset(("size", "mean", "sd", "se", "ci", "df"))
@@ -91,6 +93,8 @@ def _place(item: Item, line: Line, text: str) -> None:
     if item.kind == "tag":
         _place_tag(item, line, group)
         return
+    if item.kind == "plural" and group is not None and group.primary is not None:
+        return  # "ps < .05" beside the tests that it sums up
     if group is None or not _joins(group, item, text):
         group = Group(item.start, item.end)
         line.groups.append(group)
@@ -120,9 +124,9 @@ def _joins(group: Group, item: Item, text: str) -> bool:
     if len(gap) > 2 and _ends_sentence(gap):
         return False
     if item.kind in PRIMARY:
-        return group.primary is None or _same_test(group.primary, item, gap)
-    if group.primary is not None and group.primary.kind == "other":
-        return False
+        if group.primary is None:
+            return not _STOP_BEFORE.search(gap) or all(i.kind == "size" for i in group.items)
+        return _same_test(group.primary, item, gap)
     if item.kind == "mean":
         return sum(i.kind == "mean" for i in group.items) < 2 or group.primary is None
     return item.kind in _MANY or not any(
@@ -139,10 +143,11 @@ def _ends_sentence(gap: str) -> bool:
 
 def _same_test(before: Item, item: Item, gap: str) -> bool:
     """Whether a second test symbol describes the test that the first one opened."""
-    if before.kind == "rank":
+    if before.kind == "rank" or _rank_sum(before):
         return item.kind == "z"
     if before.kind == "slope":
-        return item.kind in ("t", "z", "wald")
+        beta = item.kind == "slope" and item.name[0] == "β" != before.name[0]
+        return beta or item.kind in ("t", "z", "wald")
     if before.kind == "odds":
         return item.kind in ("z", "wald", "chi") and not item.arguments[1:]
     if before.kind == "pair":
@@ -156,9 +161,14 @@ def _same_test(before: Item, item: Item, gap: str) -> bool:
 
 def _leading(before: Item | None, item: Item) -> Item:
     """The item that says which family a group of two test symbols is."""
-    if before is None or before.kind == "rank":
+    if before is None or before.kind == "rank" or _rank_sum(before):
         return item
     return before
+
+
+def _rank_sum(item: Item) -> bool:
+    """T without df, the signed-rank statistic; t = 2.31, df = 38 has a small letter."""
+    return item.kind == "t" and item.name == "T" and not item.arguments
 
 
 def _only_connectors(gap: str) -> bool:

@@ -16,7 +16,8 @@ __all__ = ["Labels", "label_before"]
 _COLON = re.compile(r":(?=[ \t]|\Z)")
 _BULLET = re.compile(r"[ \t]*(?:[-*•>–]+[ \t]+|\([a-z0-9]{1,3}\)[ \t]+)?")
 _SHORT_NAME = re.compile(
-    r"[ \t]*((?:[^\W\d_][\w.&'-]{0,20}[ ]){0,3}[#(]?[0-9]{1,4}[a-z]?\)?|[#][\w-]{1,20})"
+    r"[ \t]*(?!(?:In|On|By|At|For|With|From|Since|The|And|See|Of) )"
+    r"((?:[^\W\d_][\w.&'-]{0,20}[ ]){0,3}[#(]?[0-9]{1,4}[a-z]?\)?|[#][\w-]{1,20})"
     r"[ \t]*[,;:|)-]?[ \t]*\Z"
 )
 _LONGEST = 200

@@ -17,8 +17,8 @@ _PLAIN = re.compile(r"-?[0-9]{0,12}\.?[0-9]{1,12}\Z")
 _PARTS = re.compile(
     r"(?P<sign>[-+]?)(?P<mantissa>[0-9.,]+)(?:[eE](?P<e>[-+]?[0-9]+)|[x*]10\^?(?P<ten>[-+]?[0-9]+))?\Z"
 )
-_ENGLISH = re.compile(r"[0-9]{1,3}(?:,[0-9]{3}){1,8}(?:\.[0-9]+)?\Z")
-_CONTINENTAL = re.compile(r"[0-9]{1,3}(?:\.[0-9]{3}){1,8},[0-9]+\Z")
+_ENGLISH = re.compile(r"[1-9][0-9]{0,2}(?:,[0-9]{3}){1,8}(?:\.[0-9]+)?\Z")
+_CONTINENTAL = re.compile(r"[1-9][0-9]{0,2}(?:\.[0-9]{3}){1,8},[0-9]+\Z")
 _COULD_BE_EITHER = re.compile(r"[1-9][0-9]{0,2},[0-9]{3}\Z")
 _DOT = re.compile(r"[0-9]?\.[0-9]")
 _COMMA = re.compile(r"[0-9],[0-9]{1,2}(?![0-9])|[0-9],[0-9]{4}")

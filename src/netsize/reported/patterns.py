@@ -16,6 +16,7 @@ __all__ = [
     "ABBREVIATION",
     "AGAINST_WORDS",
     "BARE_ARGUMENTS",
+    "BARE_INTERVAL",
     "BRACKETS",
     "CHAINED",
     "CONNECTORS",
@@ -29,6 +30,7 @@ __all__ = [
     "NUMBER_HERE",
     "OTHER_HEAD",
     "PERCENT_PAIR",
+    "PLAIN_NUMBER",
     "RELATION",
     "SENTENCE_END",
     "SIZES",
@@ -38,6 +40,7 @@ __all__ = [
     "TABLE_2X2",
     "TAILS_WORDS",
     "TRAILING",
+    "VALUE_WORD",
     "WORD",
     "YEAR",
 ]
@@ -53,53 +56,108 @@ _PARTIAL_SQUARED = (
 )
 _SYMBOLS = (
     ("tag", "[", r"\["),
-    ("ci", "0123456789", r"[0-9]{2}(?:\.[0-9]{1,2})?[ ]?%[ ]?"
-        r"(?:CIs?\b|C\.I\.|[Cc]onfidence[ -][Ii]nterval)"),
+    (
+        "ci",
+        "0123456789",
+        r"[0-9]{2}(?:\.[0-9]{1,2})?[ ]?%[ ]?"
+        r"(?:CIs?\b|C\.I\.|[Cc]onfidence[ -][Ii]nterval)",
+    ),
     ("ci", "C", r"(?:CI|C\.I\.)(?:[ _-]?[0-9]{2}%?)?(?![A-Za-z])"),
     ("table", "2", r"2[ ]?x[ ]?2"),
     ("dfafter", "0123456789", rf"{_N}{_W}(?:degrees[ ]of[ ]freedom|d\.f\.|df)(?![\w=])"),
     ("pair", "0123456789", rf"[0-9]{{1,7}}(?:{_W}/{_W}|[ ](?:of|out[ ]of)[ ])[0-9]{{1,7}}"),
+    ("plusminus", "0123456789", r"[0-9]{1,9}(?:[.,][0-9]{1,6})?[ ]?(?:±|\+/-)[ ]?[0-9.]{1,9}"),
     ("percent", "0123456789", _PERCENT + r"[ ](?:of|\([nN])"),
     ("chi", "χWXxCc", r"(?:Wald[ '-]{0,2})?(?:χ|[Cc]hi|[Xx])[ -]?(?:\^?2|sq(?:uared?)?\b)"),
     ("wald", "Ww", r"[Ww]ald(?:'s)?(?![\w])"),
     ("r2", "ΔDdRa", r"(?:Δ|[Dd]elta[ -]?|adj(?:usted|\.)?[ ])?R[ ]?\^?2(?:[ _-]?change)?"),
     # "np2" and "hp2" are what copying ηp² from a PDF often leaves
-    ("eta", "PpGgηωεEeOonh", r"(?:[Pp]artial[ -]|[Gg]enerali[sz]ed[ -])?"
-        r"(?:η|ω|ε|[Ee]ta|[Oo]mega|[Ee]psilon|[nh](?=p))" + _PARTIAL_SQUARED),
+    (
+        "eta",
+        "PpGgηωεEeOonh",
+        r"(?:[Pp]artial[ -]|[Gg]enerali[sz]ed[ -])?"
+        r"(?:η|ω|ε|[Ee]ta|[Oo]mega|[Ee]psilon|[nh](?=p))" + _PARTIAL_SQUARED,
+    ),
     ("odds", "OoaA", r"(?:[Oo]dds[ ]ratio|[aA]?OR)s?\b(?:[ ]?\(a?OR\))?"),
-    ("ratio", "aRrHhI", r"(?:a?RR|a?HR|IRR|[Rr]isk[ ]ratio|[Rr]elative[ ]risk|"
-        r"[Hh]azards?[ ]ratio)\b(?:[ ]?\([a-zA-Z]{1,4}\))?"),
-    ("padjusted", "pPq", r"[pP][ _-]?(?:adj|corr|FDR|fdr|FWE|fwe|[bB]onf|[hH]olm|[tT]ukey)"
-        r"[a-z]{0,10}\b|q(?=[ ]?[=<])"),
-    ("plural", "tFrzpdgχ", r"(?:[tFrzpdg]'?s|χ\^?2'?s)(?=[ ]?(?:\([0-9 .,;]{1,20}\)[ ]?)?[<>=])"),
-    ("p", "pP", r"[pP](?:[ -]?[vV]alue)?"
-        r"(?:[ _]?(?:one|two|1|2)[ -]?(?:tailed|sided|tail))?(?![\w'])"),
+    (
+        "ratio",
+        "aRrHhI",
+        r"(?:a?RR|a?HR|IRR|[Rr]isk[ ]ratio|[Rr]elative[ ]risk|"
+        r"[Hh]azards?[ ]ratio)\b(?:[ ]?\([a-zA-Z]{1,4}\))?",
+    ),
+    (
+        "padjusted",
+        "pPq",
+        r"[pP][ _-]?\(?(?:adj|corr|FDR|fdr|FWE|fwe|[bB]onf|[hH]olm|[tT]ukey)"
+        r"[a-z]{0,10}\b\)?|q(?=[ ]?[=<])",
+    ),
+    (
+        "plural",
+        "tFrzpdgχ",
+        r"(?:[tFzpdg]'?s|r'?s(?![ ]?(?:\([0-9]{1,7}\)[ ]?)?=)|χ\^?2'?s)"
+        r"(?=[ ]?(?:\([0-9 .,;]{1,20}\)[ ]?)?[<>=])",
+    ),
+    (
+        "p",
+        "pP",
+        r"[pP](?:[ -]?[vV]alue)?"
+        r"(?:[ _]?(?:one|two|1|2)[ -]?(?:tailed|sided|tail))?(?![\w'])",
+    ),
     ("ns", "nN", r"[nN]\.[ ]?[sS]\.|[nN][sS](?![\w.'=<>]|[ ]?[=<>])"),
-    ("size", "nN", r"[nN](?:[ _]?(?:[0-9]{1,2}|total|tot|[A-Za-z]{1,8}(?=[ ]?=)))?(?=[ ]?[=:])"
-        r"|ns(?=[ ]?=)"),
+    (
+        "size",
+        "nN",
+        r"[nN](?:[ _]?(?:[0-9]{1,2}|total|tot|[A-Za-z]{1,8}(?=[ ]?=)))?(?=[ ]?[=:])"
+        r"|ns(?=[ ]?=)",
+    ),
     ("df", "dD", r"(?:df|d\.f\.|DF|[Dd]egrees[ ]of[ ]freedom)(?=[ ]?[=:(])"),
     ("mean", "Mm", r"(?:M|[Mm]eans?)_?[0-9]?(?=[ ]?[=:(]|[ ][0-9])"),
-    ("sd", "Ss",
-        r"(?:SDs?|S\.D\.|sd|[Ss]tandard[ ]deviation)_?[0-9]?(?=[ ]?[=:]|[ ][0-9]|[ ]of[ ])"),
-    ("se", "Ss", r"(?:SEM?|S\.E\.|se|s\.e\.|[Ss]tandard[ ]error)_?[bB0-9]?(?=[ ]?[=:]|[ ][0-9])"),
-    ("smd", "CHGdgΔ", r"(?:Cohen'?s?[ ]|Hedges'?s?[ ]|Glass'?s?[ ])?"
-        r"(?:d|g|Δ)_?(?:av|rm|unb|unbiased|[zsp])?(?=[ ]?(?:[=<>:]|of[ ]|was[ ]|\())"),
+    (
+        "sd",
+        "Ss",
+        r"(?:SDs?|S\.D\.|sd|[Ss]tandard[ ]deviation)_?[0-9]?(?=[ ]?[=:]|[ ][0-9]|[ ]of[ ])",
+    ),
+    (
+        "se",
+        "Ss",
+        r"(?:SEM?|S\.E\.|se|s\.e\.|[Ss]tandard[ ]error)[ _]?"
+        r"(?:[bB0-9]|\([bB]\))?(?=[ ]?[=:]|[ ][0-9])",
+    ),
+    (
+        "smd",
+        "CHGdgΔ",
+        r"(?:Cohen'?s?[ ]|Hedges'?s?[ ]|Glass'?s?[ ])?"
+        r"(?:d|g|Δ)_?(?:av|rm|unb|unbiased|[zsp])?(?=[ ]?(?:[=<>:]|of[ ]|was[ ]|\())",
+    ),
     ("f2", "Cf", r"(?:Cohen'?s?[ ])?f(?:\^?2)?(?=[ ]?=)"),
     ("phi", "φϕPpCVw", r"(?:φ|ϕ|[Pp]hi|(?:Cram[eé]r'?s?[ ])?V|w)(?=[ ]?=)"),
     ("slope", "bBβ", r"(?:b|B|β|[Bb]eta)_?[0-9]?(?=[ ]?[=:]|[ ]of[ ])"),
     ("rank", "UW", r"[UW](?=[ ]?(?:=|\([0-9]))"),
     ("bayes", "B", r"BF_?[01]{0,2}(?=[ ]?[=<>(])"),
-    ("r", "PpSsrρR", r"(?:[Pp]artial[ -]|[Ss]emi-?partial[ -])?"
-        r"(?:r_?(?:partial|part|pb|xy|s|p)?|pr|ρ|rho|R)(?![\w'])|r(?=_?\{?[0-9])"),
-    ("F", "Ff", r"F[12]?(?=[ ]{0,2}[(\[{])|[Ff](?=[ ]?_?\{?[0-9(\[=<>])"),
+    (
+        "r",
+        "PpSsrρR",
+        r"(?:[Pp]artial[ -]|[Ss]emi-?partial[ -])?"
+        r"(?:r_?(?:partial|part|pb|xy|s|p)?|pr|ρ|rho|R)(?![\w'])|r(?=_?\{?[0-9])",
+    ),
+    (
+        "F",
+        "Ff",
+        r"F(?:[12]|[ _-]?change)?(?=[ ]{0,2}[(\[{]|[ -](?:value|ratio|statistic))"
+        r"|[Ff](?=[ ]?_?\{?[0-9(\[=<>])",
+    ),
     ("t", "tT", r"[tT](?![A-Za-z'])"),
     ("z", "zZ", r"[zZ](?![\w'])"),
-)  # fmt: skip
+)
+# "t value of 2.31", "the F-ratio was 5.12"
+VALUE_WORD = re.compile(r"[ -](?:values?|statistics?|ratios?)\b")  # fmt: skip
 # Any other name with plain numbers in brackets and a relation: best(38) = 2, Q(12) = 34.
-_OTHER = r"(?P<other>[^\W\d_]{1,24}'?(?=[ ]?\([0-9][0-9., ;]{0,20}\)[ ]?[=<>]))"
+_OTHER = (
+    r"(?P<other>[^\W\d_]{1,24}(?:['.][^\W\d_]{1,12})?'?(?=[ ]?\([0-9][0-9., ;]{0,20}\)[ ]?[=<>]))"
+)
 
 # A symbol is no part of a word or number before it: best(38), at(4), don't(3), x.r, Δt, 12.t
-START = re.compile(r"(?<![\w'^])(?<!\w\.)[\[0-9A-Za-zβΔχηωεφϕρ]")
+START = re.compile(r"(?<![\w'^/?&@\\])(?<!\w\.)[\[0-9A-Za-zβΔχηωεφϕρ]")
 
 
 def _heads() -> dict[str, re.Pattern[str]]:
@@ -117,7 +175,7 @@ HEADS = _heads()
 OTHER_HEAD = re.compile(_OTHER)
 
 # What stands in the brackets after a symbol: (38), [38], {1, 56}, (df = 38), (1, N = 80).
-BRACKETS = re.compile(r"[ \t]{0,12}[(\[{]([^()\[\]{}\n]{1,60})[)\]}]\|?")
+BRACKETS = re.compile(r"\|?[ \t]{0,12}[(\[{]([^()\[\]{}\n]{1,60})[)\]}]\|?")
 # Degrees of freedom as lost subscripts: t38, t_38, t_{38}, t 38, F1,56; a relation follows.
 BARE_ARGUMENTS = re.compile(
     r"_?[ ]{0,2}\{?([0-9]{1,7}(?:\.[0-9]{1,6})?(?:[ ]?[,;][ ]?[0-9]{1,7}(?:\.[0-9]{1,6})?)?)\}?"
@@ -129,6 +187,8 @@ RELATION = re.compile(
     r"|(?:values?[ ])?(of|was|is|equals|equal[ ]to)(?![\w]))"
     r"[ \t]{0,12}"
 )
+# A number with a decimal point, closed by something that cannot go on with it.
+PLAIN_NUMBER = re.compile(r"[ ]?(-?[0-9]{0,7}\.[0-9]{1,8})(?=,[ ][A-Za-z]|[;)\n]|[ ]\[[A-Za-z]|\Z)")
 NUMBER_HERE = re.compile(rf"[ \t]{{0,12}}({NUMBER})")
 NOT_FINITE = re.compile(
     r"[-+]?[ ]?(?:nan|inf(?:inity|inite)?|∞|n/?a|missing)(?![\w])", re.IGNORECASE
@@ -139,7 +199,9 @@ MARKS = re.compile(
 )
 # What must not follow a value: it would be part of something else.
 TRAILING = re.compile(
-    r"(?P<stuck>(?!ns\b)[\w^])"
+    r"(?P<digits>[0-9])"
+    r"|(?P<broken>[ ]\.[ ]?[0-9]|\.[ \n]{1,12}[0-9])"
+    r"|(?P<stuck>(?!ns\b)[\w^])"
     r"|(?P<more>[.,:/][0-9])"
     r"|[ ]?(?P<percent>%)"
     r"|[ ]?(?P<range>(?:-|to[ ]|±|\+/-|\+-)[ ]?[0-9.])"
@@ -155,12 +217,17 @@ INTERVAL = re.compile(
     rf"[ \t]{{0,4}}[\])]?[,:=]?(?:[ ]?(?:of|was|is|from))?[ ]{{0,2}}[\[({{]?[ ]?({NUMBER})[ ]?"
     rf"(?:,[ ]|;[ ]?|,(?=[-+.0-9])|to[ ]|and[ ]|\.\.|-)[ ]?({NUMBER})[ ]?[\])}}]?"
 )
+# OR = 1.85 (1.10-3.10), d = 0.5 [0.1, 0.9]: an interval with no word for it
+BARE_INTERVAL = re.compile(
+    rf"[ ]?(?:\[[ ]?({NUMBER})[ ]?(?:,|;|to|-)[ ]?({NUMBER})[ ]?\]"
+    rf"|\([ ]?({NUMBER})[ ]?(?:,[ ]|;|to|-)[ ]?({NUMBER})[ ]?\))"
+)
 # n = 20; n = 20 and 22; n = 20/22; ns = 20, 22; n = 20 per group
 SIZES = re.compile(
     r"[ ]?[=:][ ]?([0-9]{1,3}(?:,[0-9]{3}){1,2}(?![0-9])|[0-9]{1,25}(?:[.,][0-9]{1,25})?)"
     r"(?:(?:[ ]?(?:/|\+|&|and|vs\.?|versus)[ ]?|,[ ]?)"
     r"(?=[0-9]{1,7}[ ]?(?:$|[\n;,)\[]))([0-9]{1,7}))?"
-    r"(?![0-9.%]|[ ]?%)"
+    r"(?!\.?[0-9]|[ ]?%)"
 )
 SIZE_EACH = re.compile(
     r"[ ]?(?:participants?|people|patients|animals|[Ss]s)?[ ]?"
@@ -189,12 +256,12 @@ ABBREVIATION = re.compile(r"(?:vs|cf|e\.g|i\.e|resp|Exp|Fig|No|approx|al)\.?\Z")
 WORD = re.compile(r"[^\W\d_][^\W\d_']{0,30}")
 LABEL_WITHIN_LINE = re.compile(r"[;.|][ \t]{0,12}([^;:.|\n]{1,80}):[ \t]{0,12}\Z")
 DESIGN_WORDS = re.compile(
-    r"(?:(?P<paired>[Pp]aired|[Dd]ependent|[Ww]ithin[ -]subjects?|[Mm]atched|"
+    r"\b(?:(?P<paired>[Pp]aired|[Dd]ependent|[Ww]ithin[ -]subjects?|[Mm]atched|"
     r"[Rr]epeated[ -]measures)"
     r"|(?P<one>[Oo]ne[ -]sample|[Ss]ingle[ -]sample)"
     r"|(?P<two>[Ii]ndependent|[Tt]wo[ -]sample|[Bb]etween[ -]subjects?|[Uu]npaired|Welch(?:'s)?))"
     r"(?:[ -](?:samples?|groups?|means))?(?:[ -]Student(?:'s)?)?"
-    r"(?:[ -]t-?[ -]?tests?,?(?:[ ]?[:(,])?)?[ -]?\Z"
+    r"(?:[ -](?:t[ -]?tests?|ANOVAs?|analysis[ ]of[ ]variance)\b[^.;:\n]{0,60})?[ :,(-]{0,3}\Z"
 )
 TAILS_WORDS = re.compile(r"\b(one|1|two|2)[ -]?(?:tailed|sided|tail)\b", re.IGNORECASE)
 AGAINST_WORDS = re.compile(
@@ -266,14 +333,15 @@ CONNECTORS = frozenset(
 _STARTS_OWN = (
     r"(?:[-•*]?[ ]?[tTFfrRzZUWb](?:[12_]?[ ]?[=<>(\[{]|[ _]?[0-9])"
     r"|χ|[Cc]hi|X\^?2|[Pp]artial|OR|M[ ]?=|#|\["
-    r"|[^\n:=]{1,80}:[ ]|[^\n]{0,40}[tTFrzZ][ ]?\([0-9])"
+    r"|[^\n:=]{1,80}:[ ]|(?:[A-Za-z]{1,20}[ -]){0,3}[tTFrzZ][ ]?\([0-9])"
 )
+# Every alternative starts with the line break itself, which is quick to find in a long text.
 SOFT_BREAK = re.compile(
-    r"(?<=[=<>({])[ \t]{0,8}\n(?=[ \t]{0,20}\S)"
-    r"|(?<=[=<>(\[][ ]-)\n(?=[ \t]{0,20}[0-9.])"
-    rf"|(?<=[,;])[ \t]{{0,8}}\n(?=[ \t]{{0,20}}(?!{_STARTS_OWN})\S)"
-    r"|\n(?=[ \t]{0,20}(?:[=<)]|>[ ]?-?[0-9.]))"
-    r"|(?<=[ \n(][tTFrzZpPdgN])\n(?=[ \t]{0,20}[(\[=<0-9])"
-    rf"|(?<=[a-z]{{3}})\n(?=[ \t]{{0,20}}(?!{_STARTS_OWN})[a-z]{{2,20}}[ ])"
-    r"|(?<=[ \n](?:and|was|for))\n(?=[ \t]{0,20}[a-zA-Z0-9])"
+    r"\n(?:(?:(?<=[=<>({]\n)|(?<=[=<>({][ ]\n))(?=[ \t]{0,20}\S)"
+    r"|(?<=[=<>(\[][ ]-\n)(?=[ \t]{0,20}[0-9.])"
+    rf"|(?:(?<=[,;]\n)|(?<=[,;][ ]\n))(?=[ \t]{{0,20}}(?!{_STARTS_OWN})\S)"
+    r"|(?=[ \t]{0,20}(?:[=<)]|>[ ]?-?[0-9.]))"
+    r"|(?<=\b[tTFrzZpPdgN]\n)(?=[ \t]{0,20}[(\[=<0-9])"
+    rf"|(?<=[a-z]{{3}}\n)(?=[ \t]{{0,20}}(?!{_STARTS_OWN})[a-z]{{2,20}}[, ])"
+    r"|(?<=[ \n](?:and|was|for)\n)(?=[ \t]{0,20}[a-zA-Z0-9]))"
 )

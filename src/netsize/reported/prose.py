@@ -31,15 +31,17 @@ def read_prose(source: Source) -> tuple[list[ReportedResult], list[Unread]]:
         against = source.against_words and patterns.AGAINST_WORDS.search(
             source.text, line.start, line.end
         )
+        floor = line.start
         for group in line.groups:
             group.faults[:0] = line.faults
+            before, floor = floor, group.end
             try:
                 fields = fields_of(
                     group,
                     tags=merged(line.settings, group.settings),
                     defaults=source.defaults,
                     text=source.text,
-                    line_start=line.start,
+                    begin=before,
                     against_words=bool(against),
                 )
             except Fault as fault:

@@ -7,14 +7,15 @@ from dataclasses import dataclass, field
 from typing import Any
 
 from netsize.reported import patterns
+from netsize.reported.arguments import argument_numbers
 from netsize.reported.faults import Fault
 from netsize.reported.grouping import Group
 from netsize.reported.items import Item
 from netsize.reported.numbers import decimal, whole
 from netsize.reported.records import Counts, Interval, Printed
-from netsize.reported.scanner import argument_numbers, printed_number
 from netsize.reported.tables import Cell
 from netsize.reported.tags import merged, parse_settings
+from netsize.reported.values import printed_number
 
 __all__ = ["Row", "row_group"]
 
@@ -290,12 +291,12 @@ def _value(cell: Cell, kind: str, name: str) -> Item:
     signs = relation[1] if relation and relation[1] else "="
     at = relation.end() if relation else 0
     try:
-        number, end, flags = printed_number(cell.text, at, signs, kind, 0)
+        number, end = printed_number(cell.text, at, signs, kind, 0)
     except Fault as fault:
         raise Fault(fault.reason, cell.start, cell.end) from None
     if number is None or cell.text[end:].strip():
         raise Fault(f'"{cell.text[:40]}" is not a number', cell.start, cell.end)
-    return Item(kind, name, cell.start, cell.end, number, flags=frozenset(flags))
+    return Item(kind, name, cell.start, cell.end, number)
 
 
 def _number(cell: Cell) -> float:

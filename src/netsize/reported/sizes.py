@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
+from netsize.reported.faults import Fault
 from netsize.reported.grouping import Group
 from netsize.reported.records import Origin
 from netsize.reported.tags import Settings
@@ -76,6 +77,8 @@ def _printed(group: Group) -> Sizes:
 
 def fit_to_df(sizes: Sizes, df: tuple[float, ...], design: str | None) -> Fit:
     """Settle whether one printed n is the total or one group's size, from the error df."""
+    if len(df) == 1 and len(sizes.n) > 2:
+        raise Fault(f"t compares two groups, and {len(sizes.n)} sizes are given")
     numerator = df[0] if len(df) == 2 else 1.0
     error = df[-1]
     if len(sizes.n) != 1:

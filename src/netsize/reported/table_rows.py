@@ -69,7 +69,7 @@ def _row(cells: tuple[Cell, ...], table: Table, source: Source) -> list[Reported
                 tags=settings,
                 defaults=source.defaults,
                 text=source.text,
-                line_start=group.start,
+                begin=group.start,
             )
         except Fault as fault:
             raise Fault(fault.reason, *marked_place(group, fault)) from None

@@ -71,7 +71,7 @@ _EACH = re.compile(r"(?:n[ :=]{1,3})?([0-9,]{1,12}) (?:per|each|a|in each)(?: gr
 _FREE_TEXT = re.compile(
     r"(sample|leave[- ]?out|left[- ]?out|omit|exclude|skip)\b[ :=]{0,3}(.*)\Z", re.I | re.S
 )
-_BOUNDARY = re.compile(r";|,(?=[ ]?[^\W\d])")
+_BOUNDARY = re.compile(r";|,(?=[ ]?(?![nN][0-9 =:])[^\W\d])")
 
 
 @dataclass(frozen=True, slots=True)
