@@ -90,7 +90,7 @@ def paragraph(weighing: Weighing) -> str:
 
 
 def _judgement(weighing: Weighing) -> str:
-    usable = [e for e in weighing.corrections if _usable(e)]
+    usable = weighing.running
     sentences = []
     if usable:
         sentences += [_agreement(weighing, usable), *_spread(weighing, usable)]
@@ -157,9 +157,9 @@ def _agreement(weighing: Weighing, usable: Sequence[Estimate]) -> str:
             f"The {len(usable)} corrections that run put it between {symbol} = "
             f"{fmt.effect(min(values))} and {fmt.effect(max(values))}"
         )
-    deflations = [d for d in map(weighing.deflation, usable) if d is not None]
-    if deflations:
-        text += f"; the middle one {_deflated(_median(deflations))}"
+    middle = weighing.middle_deflation
+    if middle is not None and len(usable) > 1:
+        text += f"; the middle one {_deflated(middle)}"
     text += "."
     if not weighing.metric.signed:
         return text
@@ -282,20 +282,10 @@ def _deflated(share: float) -> str:
     return f"is {fmt.percent(share)} below the printed effect"
 
 
-def _usable(e: Estimate) -> bool:
-    return e.estimate is not None and e.status in ("fine", "at a boundary")
-
-
 def _shown(weighing: Weighing, e: Estimate) -> float:
     value = weighing.shown(e.estimate)
     assert value is not None
     return value
-
-
-def _median(values: Sequence[float]) -> float:
-    ordered = sorted(values)
-    half = len(ordered) // 2
-    return ordered[half] if len(ordered) % 2 else (ordered[half - 1] + ordered[half]) / 2
 
 
 def _join(parts: Sequence[str]) -> str:

@@ -80,6 +80,18 @@ class Weighing:
             return None
         return 1 - value / self.as_printed
 
+    @property
+    def running(self) -> tuple[Estimate, ...]:
+        """Corrections with a value that a reader may use: fine or at a boundary."""
+        usable = ("fine", "at a boundary")
+        return tuple(e for e in self.corrections if e.estimate is not None and e.status in usable)
+
+    @property
+    def middle_deflation(self) -> float | None:
+        """Median deflation of the running corrections; None where none is defined."""
+        values = [d for d in map(self.deflation, self.running) if d is not None]
+        return float(np.median(values)) if values else None
+
     def to_dict(self) -> dict[str, Any]:
         """Plain JSON types. Numbers are on the pooling metric, those under "shown" as people read.
 
