@@ -177,16 +177,20 @@ class _Case:
         own: Array,
         units: IntArray,
         finite: BoolArray,
-        reached: Array,
+        reached: Array | None = None,
         ceiling: float = float("nan"),
     ) -> Sizing:
-        """The answer once its units are known; 0 participants where there is no finite size."""
+        """The answer once its units are known; 0 participants where there is no finite size.
+
+        `reached` is the goal's own quantity, the power where left out.
+        """
         study, each = self.study, self.cost.each
         sized = np.maximum(units, study.first)
         groups = np.moveaxis(np.where(finite, study.groups(sized), 0), 0, -1).astype(np.int64)
         recruited = np.moveaxis(np.where(finite, study.recruited(sized), 0), 0, -1)
         recruited = recruited.astype(np.int64)
         total = np.asarray(recruited.sum(axis=-1))
+        power = _where(finite, study.power(sized, np.where(finite, own, 0.0)))
         price = np.where(finite & (each > 0), self.cost.fixed + each * total, np.nan)
         return Sizing(
             study=study,
@@ -198,8 +202,8 @@ class _Case:
             n_total=np.asarray(groups.sum(axis=-1)),
             recruited_per_group=recruited,
             recruited_total=total,
-            power=_where(finite, study.power(sized, np.where(finite, own, 0.0))),
-            reached=_where(finite, reached),
+            power=power,
+            reached=power if reached is None else _where(finite, reached),
             finite=finite,
             ceiling=ceiling,
             cost=price,
@@ -215,7 +219,6 @@ def _given(case: _Case, effect: object, units: Array, target: float) -> Sizing:
         own=own,
         units=units.astype(np.int64),
         finite=np.ones(own.shape, dtype=bool),
-        reached=case.study.power(units, own),
     )
 
 
@@ -228,7 +231,6 @@ def _for_power(case: _Case, effect: object, target: float) -> Sizing:
         own=own,
         units=units,
         finite=finite,
-        reached=case.study.power(np.maximum(units, case.study.first), own),
     )
 
 
