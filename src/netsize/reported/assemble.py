@@ -89,7 +89,9 @@ def _tails(group: Group, tags: Settings, defaults: Settings, text: str) -> int:
             return 1
         if "two-tailed" in item.flags:
             return 2
-    around = text[max(group.start - 20, 0) : group.end + 20]
+    around = text[max(group.start - 20, 0) : group.end + 25]
+    if "critical" in around and patterns.CRITICAL_VALUE.search(around):
+        raise Fault("a critical value is no result")
     if "tail" in around or "sided" in around:
         said = patterns.TAILS_WORDS.search(around.split("\n")[0] if "\n" not in around else around)
         if said:

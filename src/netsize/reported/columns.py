@@ -27,7 +27,7 @@ def _column(name: str, meaning: str, spellings: str = "", *, evidence: bool = Fa
 
 
 COLUMNS = (
-    _column("label", "study label", "study|paper|experiment|source|reference|study label"),
+    _column("label", "study label", "study|paper|experiment|source|reference|study label|id"),
     _column("result", "statistic as printed, such as t(38) = 2.31, p = .026",
             "statistic|statistics|result as printed|as printed|reported", evidence=True),
     _column("t", "value of t", "t value|t statistic", evidence=True),

@@ -21,6 +21,7 @@ __all__ = [
     "CHAINED",
     "CONNECTORS",
     "COUNT_PAIR",
+    "CRITICAL_VALUE",
     "DESIGN_WORDS",
     "HEADS",
     "INTERVAL",
@@ -157,7 +158,7 @@ _OTHER = (
 )
 
 # A symbol is no part of a word or number before it: best(38), at(4), don't(3), x.r, Δt, 12.t
-START = re.compile(r"(?<![\w'^/?&@\\])(?<!\w\.)[\[0-9A-Za-zβΔχηωεφϕρ]")
+START = re.compile(r"\[|(?<![\w'^/?&@\\])(?<!\w\.)[0-9A-Za-zβΔχηωεφϕρ]")
 
 
 def _heads() -> dict[str, re.Pattern[str]]:
@@ -264,6 +265,7 @@ DESIGN_WORDS = re.compile(
     r"(?:[ -](?:t[ -]?tests?|ANOVAs?|analysis[ ]of[ ]variance)\b[^.;:\n]{0,60})?[ :,(-]{0,3}\Z"
 )
 TAILS_WORDS = re.compile(r"\b(one|1|two|2)[ -]?(?:tailed|sided|tail)\b", re.IGNORECASE)
+CRITICAL_VALUE = re.compile(r"\bcritical[ ](?:values?|[tFrz]\b|χ)")
 AGAINST_WORDS = re.compile(
     r"(?:contrary|opposite)[ ](?:to[ ])?(?:what[ ](?:was|we)[ ])?(?:the[ ]|our[ ])?"
     r"(?:prediction|predicted|hypothes|expectation|expected)"

@@ -15,6 +15,9 @@ from netsize.reported.tags import parse_settings
 __all__ = ["PIECES"]
 
 
+_NO_SETTING = re.compile(r"[\s0-9.,;:%+-]*\Z")
+
+
 def _tag(match: re.Match[str], text: str) -> Item | None:
     start = match.start()
     end = text.find("]", start, start + 300)
@@ -22,8 +25,8 @@ def _tag(match: re.Match[str], text: str) -> Item | None:
     if end < 0 or (0 <= newline < end):
         return None
     content = text[start + 1 : end]
-    if not content.strip() or re.match(r"[\s0-9.,;:%+-]*\Z", content):
-        return None  # an interval or the number of a reference
+    if len(content.strip()) < 2 or _NO_SETTING.match(content):
+        return None  # an interval, a footnote letter or the number of a reference
     settings = parse_settings(content, start + 1)
     return Item("tag", "tag", start, end + 1, settings=settings)
 

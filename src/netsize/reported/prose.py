@@ -50,7 +50,7 @@ def read_prose(source: Source) -> tuple[list[ReportedResult], list[Unread]]:
             if fields is not None:
                 built.append((group, fields))
         if line.tags and not built and not lost:
-            lost.append(_lonely(line.tags[0], source))
+            lost += _lonely(line.tags[0], source)
         results += _named(built, line, source)
         unread += lost
     return results, unread
@@ -64,12 +64,15 @@ def marked_place(group: Group, fault: Fault) -> tuple[int, int]:
     return (item.start, item.end) if item is not None else (group.start, group.end)
 
 
-def _lonely(tag: Item, source: Source) -> Unread:
+def _lonely(tag: Item, source: Source) -> list[Unread]:
+    """A setting that belongs to nothing; square brackets in plain prose are none."""
+    if tag.fault and "Did you mean" not in tag.fault:
+        return []
     reason = tag.fault or (
         "a setting without a statistic on its line; settings for all lines stand at the top, as in "
         "defaults: [paired]"
     )
-    return source.places.unread(*(tag.marked or (tag.start, tag.end)), reason)
+    return [source.places.unread(*(tag.marked or (tag.start, tag.end)), reason)]
 
 
 def _named(

@@ -62,6 +62,8 @@ def _statistic(kind: str, match: re.Match[str], text: str) -> Item | None:
     flags: set[str] = set()
     notes: list[str] = []
     bracketed = False
+    if text[at : at + 1] == "|" and text[start - 1 : start] == "|":
+        at += 1  # |t| = 2.31
     worded = patterns.VALUE_WORD.match(text, at)
     if worded:
         at = worded.end()

@@ -58,7 +58,7 @@ def _row(cells: tuple[Cell, ...], table: Table, source: Source) -> list[Reported
     }
     row = row_group(named)
     groups = _printed_groups(named["result"], row) if _filled(named.get("result")) else [row.group]
-    label = source.words(row.label.start, row.label.end).strip('"') if row.label else None
+    label = _label(row.label, source)
     sample = row.settings.get("sample")
     results = []
     for group in groups:
@@ -87,6 +87,10 @@ def _row(cells: tuple[Cell, ...], table: Table, source: Source) -> list[Reported
             )
         )
     return results
+
+
+def _label(cell: Cell | None, source: Source) -> str | None:
+    return source.words(cell.start, cell.end).replace('""', '"') or None if cell else None
 
 
 def _filled(cell: Cell | None) -> bool:

@@ -23,15 +23,11 @@ _RULE = re.compile(r"[ \t]*\|?[ \t]*:?-{2,}:?[ \t]*(?:\|[ \t]*:?-{2,}:?[ \t]*)*\
 
 @dataclass(frozen=True, slots=True)
 class Cell:
-    """Text of one cell without quotes and outer blanks, and where it starts in the text."""
+    """Text of one cell without quotes and outer blanks, and where it stands in the whole text."""
 
     text: str
     start: int
-
-    @property
-    def end(self) -> int:
-        """Where it ends (short of doubled quotes inside it)."""
-        return self.start + len(self.text)
+    end: int
 
 
 @dataclass(frozen=True, slots=True)
@@ -129,7 +125,7 @@ def _cells(text: str, start: int, delimiter: str) -> tuple[tuple[Cell, ...], int
     while True:
         quoted = _QUOTED.match(text, position)
         if quoted:
-            cells.append(Cell(quoted[1].replace('""', '"').strip(), quoted.start(1)))
+            cells.append(Cell(quoted[1].replace('""', '"').strip(), *quoted.span(1)))
             position = quoted.end()
             if position > line_end:  # the quoted cell held line breaks
                 line_end = text.find("\n", position)
@@ -146,7 +142,8 @@ def _cells(text: str, start: int, delimiter: str) -> tuple[tuple[Cell, ...], int
 
 def _cell(piece: str, start: int) -> Cell:
     stripped = piece.strip()
-    return Cell(stripped, start + (len(piece) - len(piece.lstrip()) if stripped else 0))
+    begin = start + (len(piece) - len(piece.lstrip()) if stripped else 0)
+    return Cell(stripped, begin, begin + len(stripped))
 
 
 def _without_borders(cells: list[Cell], delimiter: str) -> tuple[Cell, ...]:

@@ -184,7 +184,7 @@ def _free_text(word: str, rest: str) -> dict[str, Any]:
     if word == "sample":
         if not rest:
             raise Fault("[sample NAME] needs a name")
-        return {"sample": rest}
+        return {"sample": rest.strip("\"' ") or rest}
     return {"left_out": rest or "no reason given"}
 
 

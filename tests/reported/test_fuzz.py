@@ -1,0 +1,92 @@
+"""Whatever comes in, only results or reading errors come out, in time linear in the length."""
+
+import math
+from pathlib import Path
+from time import process_time
+
+import pytest
+from hypothesis import given, settings
+from hypothesis import strategies as st
+
+from netsize.errors import ReadingError
+from netsize.reported import read
+from netsize.reported.check import check
+
+LINES = Path(__file__).with_name("corpus.tsv").read_text(encoding="utf-8").splitlines()
+REAL = [
+    line.split("\t")[0].replace("\\n", "\n").replace("\\t", "\t")
+    for line in LINES
+    if not line.startswith("# ")
+]
+BITS = st.sampled_from([*"tFrzpdnNMχη²=<>()[]{},.;:|-−–±%*'\"\t\n #&^_0123456789", "\u2009", "\u200b",
+                        "\r\n", "95% CI ", "p = ", "t(38) = ", " vs ", "𝑡", "½", "ﬁ", "e9", "NaN"])  # fmt: skip
+FEW = settings(max_examples=150, deadline=None, derandomize=True)
+
+
+def examine(text):
+    try:
+        reading = read(text)
+    except ReadingError as error:
+        assert str(error)
+        return
+    assert reading.results or reading.unread
+    for r in reading.results:
+        assert r.text == text[r.span.start : r.span.end]
+        assert r.label
+        assert r.sample
+        assert all(math.isfinite(d) and d > 0 for d in r.df)
+        assert all(n >= 1 for n in r.n)
+        assert r.value is None or math.isfinite(r.value)
+        assert r.p is None or 0 <= r.p.value <= 1
+        assert r.family != "r" or r.value is None or abs(r.value) < 1
+        assert r.family not in ("f", "chi2") or r.value is None or r.value >= 0
+        for finding in check(r):
+            assert finding.message
+    assert len({r.label for r in reading.results}) == len(reading.results)
+
+
+@FEW
+@given(st.text(max_size=200))
+def test_any_text(text):
+    examine(text)
+
+
+@FEW
+@given(st.lists(BITS, max_size=40))
+def test_pieces_of_statistics(bits):
+    examine("".join(bits))
+
+
+@FEW
+@given(
+    st.lists(st.sampled_from(REAL), min_size=1, max_size=4),
+    st.lists(st.tuples(st.integers(0, 10_000), st.integers(0, 3), BITS), max_size=6),
+)
+def test_mutated_real_lines(lines, edits):
+    text = "\n".join(lines)
+    for where, removed, added in edits:
+        where %= len(text) + 1
+        text = text[:where] + added + text[where + removed :]
+    examine(text)
+
+
+@pytest.mark.parametrize(
+    "unit",
+    ["t(((((", "1234567890", "t(38", "F(1,", "p = ", "[n ", "t ", "\n,", "12/40 vs ", "95% CI ",
+     '"a",', "χ²(", "a", "M = 5 ", "&lt;", "½", "r = .3 ± ", "a:", "|", ";\n", "#", "n = 20, ", "t,df\n",
+     "\u0301", "(", "12%", "1,", "{[("],
+)  # fmt: skip
+def test_time_is_linear(unit):
+    """Four times the text takes about four times as long; quadratic work would take sixteen."""
+
+    def seconds(size):
+        text = unit * (size // len(unit))
+        start = process_time()
+        try:
+            read(text)
+        except ReadingError:
+            pass
+        return process_time() - start
+
+    small = max(seconds(40_000), seconds(40_000), 0.02)
+    assert seconds(160_000) < 9 * small
