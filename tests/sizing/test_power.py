@@ -107,7 +107,7 @@ def test_tiny_groups(n: int) -> None:
     assert 0.05 < float(power("two-groups", effect=1.0, n=n)) < 0.3
     assert 0.05 < float(power("paired", effect=1.0, n=n)) < 0.3
     assert 0.05 < float(power("anova", effect=1.0, n=n)) < 0.9
-    with pytest.raises(SettingError, match="--n: too few for a test.*at least 4"):
+    with pytest.raises(SettingError, match=r"--n: too few for a test.*at least 4"):
         power("correlation", effect=0.5, n=n)
     with pytest.raises(SettingError, match=r"at least 7"):
         power("regression", effect=0.5, n=n, tested_predictors=5)
