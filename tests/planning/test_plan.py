@@ -166,6 +166,7 @@ def test_modifiers_show_in_the_sizes():
         ("F(2, 57) = 5.0\nF(2, 87) = 4.1", "cohen-f", "anova"),
         ("t(20) = 2.9 [paired]\nt(30) = 3.1 [paired]", "difference-score", "paired"),
         ("t(20) = 2.9 [one-sample]", "difference-score", "one-sample"),
+        ("χ2(2, N = 80) = 8.5\nχ2(2, N = 100) = 9.1", "cohen-f", "contingency"),
     ],
 )
 def test_the_design_follows_the_evidence(text, metric, design):
@@ -206,6 +207,12 @@ def test_results_of_one_sample_are_counted_once():
 def test_an_arithmetic_disagreement_that_matters_is_a_warning():
     plan = netsize.plan(STRONG + "G: t(38) = 1.50, p = .03\n")
     assert any(w.startswith("G:") for w in plan.warnings)
+
+
+def test_effects_far_outside_the_prior_are_a_warning(strong):
+    plan = netsize.plan("t(38) = 50")
+    assert any("prior standard deviations" in w for w in plan.warnings)
+    assert not any("prior standard deviations" in w for w in strong.warnings)
 
 
 def test_unread_statistics_stop_a_plan_unless_skipped():

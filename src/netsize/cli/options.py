@@ -39,7 +39,7 @@ _OPTIONS: dict[str, Any] = {
     "design": _option(
         str,
         "Design of the new study: two-groups, paired, one-sample, correlation, anova, factorial, "
-        "repeated, regression. Default: as the evidence.",
+        "repeated, regression, contingency. Default: as the evidence.",
     ),
     "alpha": _option(float, "Level of its test. Default 0.05."),
     "sides": _option(int, "Sides of its test, 2 or 1. Default 2."),
@@ -72,7 +72,7 @@ _OPTIONS: dict[str, Any] = {
         str, "Published corrections to add as rows: all, or names joined by commas."
     ),
     "groups": _option(int, "Groups (anova, repeated)."),
-    "df1": _option(int, "Numerator degrees of freedom of the effect (factorial)."),
+    "df1": _option(int, "Degrees of freedom of the effect (factorial, contingency)."),
     "cells": _option(int, "Cells of the whole design (factorial)."),
     "measurements": _option(int, "Measurements a participant (repeated)."),
     "tested_predictors": _option(int, "Predictors tested together (regression)."),

@@ -131,11 +131,15 @@ def _reading(source: str | Reading | Sequence[ReportedResult]) -> Reading:
     return Reading(results=tuple(source))
 
 
+def _places(number: int) -> str:
+    return "1 place looks" if number == 1 else f"{number} places look"
+
+
 def _unread_message(reading: Reading) -> str:
     places = "\n".join(
         f"  line {u.line}, column {u.column}: {u.text}\n    {u.reason}" for u in reading.unread
     )
     return (
-        f"{len(reading.unread)} place(s) look like statistics and cannot be used:\n{places}\n"
+        f"{_places(len(reading.unread))} like statistics and cannot be used:\n{places}\n"
         "Correct them, or leave them out with --skip-unread (skip_unread=True)."
     )

@@ -14,7 +14,7 @@ from netsize.sizing.study import Study
 __all__ = ["assumptions", "warnings"]
 
 _FEW = 5  # results below which one more could change much
-_FAR = 1.25  # ratio of n at which a decision error of the literature touches the answer
+_OUTLANDISH = 2.5  # prior standard deviations beyond which effects are doubted
 
 
 def assumptions(
@@ -92,6 +92,12 @@ def warnings(
             "the evidence is better explained by no effect than by one: a small first study or a "
             "replication may be wiser than the full study"
         )
+    scale = literature.averaged.priors.effect_scale
+    if literature.pooled is not None and abs(literature.pooled.mean) > _OUTLANDISH * scale:
+        out.append(
+            f"the printed effects lie more than {_OUTLANDISH:g} prior standard deviations from 0: "
+            "check the entries, or widen --effect-scale if effects of this size are real"
+        )
     if not literature.averaged.rested:
         out.append(
             f"the numerical grids did not settle: quantiles still moved by "
@@ -99,7 +105,6 @@ def warnings(
         )
     profile = literature.profile.mean.quantile(1 - settings.assurance)
     averaged = literature.averaged.mean.quantile(1 - settings.assurance)
-    scale = literature.averaged.priors.effect_scale
     if np.isfinite(profile) and abs(profile - averaged) > 0.25 * scale:
         out.append(
             "the two readings of the selection model differ clearly: the answer leans on the "

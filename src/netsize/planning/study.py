@@ -25,6 +25,7 @@ METRIC_OF = {
     "factorial": ("cohen-f", "f"),
     "repeated": ("cohen-f", "f"),
     "regression": ("cohen-f", "f"),
+    "contingency": ("cohen-f", "w"),
 }
 
 
@@ -87,12 +88,20 @@ def _matching(table: EffectTable) -> tuple[str, tuple[str, ...], dict[str, int]]
 
 
 def _matching_f(table: EffectTable) -> tuple[str, tuple[str, ...], dict[str, int]]:
-    first = {row.evidence.df[0] for row in table.rows if row.evidence.kernel == "f"}
-    if len(first) != 1 or next(iter(first)) != int(next(iter(first))):
+    kinds = {(row.evidence.kernel, row.evidence.df[0]) for row in table.rows}
+    if len(kinds) != 1 or not next(iter(kinds))[1].is_integer():
         raise EvidenceError(
-            "the F tests have different numerator degrees of freedom; say which design the new "
-            "study has, e.g. --design anova --groups 3 or --design factorial --df1 2 --cells 6"
+            "the tests differ in kind or in numerator degrees of freedom; say which design the new "
+            "study has, e.g. --design anova --groups 3, --design factorial --df1 2 --cells 6 or "
+            "--design contingency --df1 2"
         )
-    groups = int(first.pop()) + 1
+    kernel, df1 = kinds.pop()
+    if kernel == "chi2":
+        note = (
+            f"new study: a contingency table with {df1:g} degrees of freedom, as the evidence, its "
+            "Cohen's w shown as f (both have noncentrality f² times participants); set --design"
+        )
+        return "contingency", (note,), {"df1": int(df1)}
+    groups = int(df1) + 1
     note = f"new study: one-way, {groups} equal groups, as the evidence; set --design and --groups"
     return "anova", (note,), {"groups": groups}
