@@ -17,6 +17,7 @@ import netsize
 from netsize.cli.effects import effects
 from netsize.cli.plan import plan
 from netsize.cli.read import read
+from netsize.cli.report import report
 from netsize.cli.solve import solve
 from netsize.cli.sources import sources
 from netsize.cli.weigh import weigh
@@ -52,7 +53,7 @@ def _options(
     """How many participants, net of publication bias: from pasted statistics to n."""
 
 
-for command in (read, effects, weigh, plan, solve, sources):
+for command in (read, effects, weigh, plan, report, solve, sources):
     app.command()(command)
 
 

@@ -15,7 +15,7 @@ import typer
 
 from netsize.errors import SettingError
 
-__all__ = ["SkipUnread", "Source", "numbers", "planning_options"]
+__all__ = ["SkipUnread", "Source", "numbers", "planning_options", "spelled"]
 
 Source = Annotated[
     str | None,
@@ -151,3 +151,18 @@ def numbers(option: str, text: str) -> tuple[float, ...]:
         return tuple(float(part) for part in text.split(","))
     except ValueError:
         raise SettingError(option, f"{text!r} is not a list of numbers such as 0.05,0.10") from None
+
+
+def spelled(choices: dict[str, Any]) -> list[str]:
+    """Choices as the words of a command line, for the record."""
+    words: list[str] = []
+    for name, value in choices.items():
+        own = [n for n in _OPTIONS[name].__metadata__[0].param_decls or () if n.startswith("--")]
+        option = own[0] if own else f"--{name.replace('_', '-')}"
+        if value is True:
+            words.append(option)
+        elif isinstance(value, tuple):
+            words += [option, ",".join(f"{v:g}" if isinstance(v, float) else v for v in value)]
+        else:
+            words += [option, f"{value:.12g}" if isinstance(value, float) else str(value)]
+    return words

@@ -22,6 +22,12 @@ def plan(
             "--sensitivity", help="Add how the answer moves with priors, assumptions and samples."
         ),
     ] = False,
+    figures: Annotated[
+        str | None,
+        typer.Option(
+            "--figures", help="Folder for the figures as SVG, PNG and PDF.", show_default=False
+        ),
+    ] = None,
     as_json: Annotated[bool, typer.Option("--json", help="Print JSON for programs.")] = False,
     choices: dict[str, Any] | None = None,
 ) -> None:
@@ -37,6 +43,10 @@ def plan(
     from netsize.presentation.planning import show_plan, show_variations
 
     made = netsize.plan(load(source), skip_unread=skip_unread, **(choices or {}))
+    if figures is not None:
+        from netsize.presentation.report.files import write_figures
+
+        write_figures(made, figures)
     variations = (*vary(made), *leave_one_out(made)) if sensitivity else ()
     if as_json:
         record = made.to_dict()

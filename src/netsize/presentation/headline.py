@@ -38,7 +38,8 @@ def _precision(plan: Plan) -> str:
     kept = f"with probability {percent(s.assurance)}" if s.assured else "on average"
     return (
         f"Plan for {planned(plan)}: the {percent(s.level)} interval of the effect reaches at "
-        f"most {effect(s.half_width)} to either side {kept} at {_value(plan)}, {value_in_words(plan)}."
+        f"most {effect(s.half_width)} to either side {kept} at {_value(plan)}, "
+        f"{value_in_words(plan)}."
     )
 
 
