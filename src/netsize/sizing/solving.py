@@ -27,7 +27,7 @@ from netsize.sizing.precision import (
     units_for_half_width,
 )
 from netsize.sizing.records import Cost, Goal, Sizing
-from netsize.sizing.search import smallest_units
+from netsize.sizing.search import smallest_units, units_and_power
 from netsize.sizing.study import LARGEST, Study, make_study
 
 __all__ = ["own_effects", "solve", "units_of"]
@@ -177,12 +177,13 @@ class _Case:
         own: Array,
         units: IntArray,
         finite: BoolArray,
+        power: Array | None = None,
         reached: Array | None = None,
         ceiling: float = float("nan"),
     ) -> Sizing:
         """The answer once its units are known; 0 participants where there is no finite size.
 
-        `reached` is the goal's own quantity, the power where left out.
+        `power` is computed where left out; `reached` is the goal's own quantity, else the power.
         """
         study, each = self.study, self.cost.each
         sized = np.maximum(units, study.first)
@@ -190,7 +191,8 @@ class _Case:
         recruited = np.moveaxis(np.where(finite, study.recruited(sized), 0), 0, -1)
         recruited = recruited.astype(np.int64)
         total = np.asarray(recruited.sum(axis=-1))
-        power = _where(finite, study.power(sized, np.where(finite, own, 0.0)))
+        if power is None:
+            power = _where(finite, study.power(sized, np.where(finite, own, 0.0)))
         price = np.where(finite & (each > 0), self.cost.fixed + each * total, np.nan)
         return Sizing(
             study=study,
@@ -224,13 +226,14 @@ def _given(case: _Case, effect: object, units: Array, target: float) -> Sizing:
 
 def _for_power(case: _Case, effect: object, target: float) -> Sizing:
     own = own_effects(case.study, effect, case.scale)
-    units, finite = smallest_units(case.study, own, target)
+    units, finite, power = units_and_power(case.study, own, target)
     return case.sizing(
         Goal(kind="power", target=target, level=case.level),
         effect=np.asarray(effect, dtype=float),
         own=own,
         units=units,
         finite=finite,
+        power=power,
     )
 
 

@@ -163,31 +163,28 @@ class Study:
 
     def power(self, units: ArrayLike, effect: ArrayLike) -> Array:
         """P(significant), both tails counted where the test has two."""
-        return np.minimum(self.predicted(units, effect) + self.opposite(units, effect), 1.0)
+        return np.minimum(self.near_tail(units, effect) + self.far_tail(units, effect), 1.0)
 
-    def reaches(self, units: Array, effect: Array, target: Array) -> BoolArray:
-        """Whether power(units, effect) ≥ target, for effects that the test can see.
+    def near_tail(self, units: ArrayLike, effect: ArrayLike) -> Array:
+        """P(significant in the direction of the effect), for a one-sided test in the predicted."""
+        return self._tail(units, effect, 1.0)
 
-        The far tail, below its level everywhere, is computed only where it can decide.
-        """
-        chance = self.design.law.chance
-        ncp, parameters = self.terms(*broadcast(units, effect))
+    def far_tail(self, units: ArrayLike, effect: ArrayLike) -> Array:
+        """P(significant against the direction of the effect), at most the level of one tail."""
         if not self._two_tails:
-            return np.asarray(chance(self.tail, ncp, parameters) >= target)
-        near = chance(self.tail, np.abs(ncp), parameters)
-        holds = np.asarray(near >= target)
-        open_ = ~holds & (near + self.tail >= target)
-        if open_.any():
-            rest = tuple(np.broadcast_to(p, near.shape)[open_] for p in parameters)
-            far = chance(self.tail, -np.abs(ncp[open_]), rest)
-            holds[open_] = near[open_] + far >= np.broadcast_to(target, near.shape)[open_]
-        return holds
+            return np.zeros(np.broadcast(units, effect).shape)
+        return self._tail(units, effect, -1.0)
+
+    def _tail(self, units: ArrayLike, effect: ArrayLike, side: float) -> Array:
+        ncp, parameters = self.terms(*broadcast(units, effect))
+        if self._two_tails:
+            ncp = side * np.abs(ncp)
+        return self.design.law.chance(self.tail, ncp, parameters)
 
     def guess(self, effect: Array, target: Array) -> Array:
         """About the units that the target needs, to start a search."""
         law = self.design.law
-        many = np.full(np.shape(effect), _MANY)
-        ncp, parameters = self.terms(many, effect)
+        ncp, parameters = self.terms(np.asarray(_MANY), effect)
         with np.errstate(all="ignore"):
             needed = law.needed(self.tail, target, parameters)
             units = np.maximum(_MANY * (needed / ncp) ** 2, self.first)
