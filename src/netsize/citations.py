@@ -225,4 +225,110 @@ _SOURCES = (
         "Belsley, D. A., Kuh, E., & Welsch, R. E. (1980). Regression diagnostics. Wiley.",
         "Shift of the mean when one sample is left out.",
     ),
+    Source(
+        "Cohen 1988",
+        "Cohen, J. (1988). Statistical power analysis for the behavioral sciences (2nd ed.). "
+        "Erlbaum.",
+        "Effect sizes d, f, f², h, q, w and the noncentralities of their tests.",
+    ),
+    Source(
+        "Welch 1938",
+        "Welch, B. L. (1938). The significance of the difference between two means when the "
+        "population variances are unequal. Biometrika, 29, 350-362.",
+        "Two groups with unequal variances.",
+    ),
+    Source(
+        "Hotelling 1953",
+        "Hotelling, H. (1953). New light on the correlation coefficient and its transforms. "
+        "Journal of the Royal Statistical Society B, 15, 193-232.",
+        "Exact distribution of a correlation.",
+    ),
+    Source(
+        "Abramowitz & Stegun 1964",
+        "Abramowitz, M., & Stegun, I. A. (Eds.) (1964). Handbook of mathematical functions. "
+        "National Bureau of Standards.",
+        "Normal approximation to noncentral t, where searches start.",
+    ),
+    Source(
+        "Muller & Barton 1989",
+        "Muller, K. E., & Barton, C. N. (1989). Approximate power for repeated-measures ANOVA"
+        " lacking sphericity. Journal of the American Statistical Association, 84, 549-555.",
+        "Power of repeated measures without sphericity.",
+    ),
+    Source(
+        "Fleiss et al. 2003",
+        "Fleiss, J. L., Levin, B., & Paik, M. C. (2003). Statistical methods for rates and "
+        "proportions (3rd ed.). Wiley.",
+        "Two proportions, with and without continuity correction.",
+    ),
+    Source(
+        "Schuirmann 1987",
+        "Schuirmann, D. J. (1987). A comparison of the two one-sided tests procedure and the "
+        "power approach for assessing the equivalence of average bioavailability. Journal of "
+        "Pharmacokinetics and Biopharmaceutics, 15, 657-680.",
+        "Equivalence by two one-sided tests.",
+    ),
+    Source(
+        "Owen 1965",
+        "Owen, D. B. (1965). A special case of a bivariate non-central t-distribution. "
+        "Biometrika, 52, 437-446.",
+        "Exact power of two one-sided tests.",
+    ),
+    Source(
+        "Dunn 1961",
+        "Dunn, O. J. (1961). Multiple comparisons among means. Journal of the American "
+        "Statistical Association, 56, 52-64.",
+        "Several tests sharing α (Bonferroni).",
+    ),
+    Source(
+        "Kish 1965",
+        "Kish, L. (1965). Survey sampling. Wiley.",
+        "Design effect of clusters.",
+    ),
+    Source(
+        "Donner & Klar 2000",
+        "Donner, A., & Klar, N. (2000). Design and analysis of cluster randomization trials "
+        "in health research. Arnold.",
+        "Sizes of studies that allocate whole clusters.",
+    ),
+    Source(
+        "Borm et al. 2007",
+        "Borm, G. F., Fransen, J., & Lemmens, W. A. J. G. (2007). A simple sample size "
+        "formula for analysis of covariance in randomized clinical trials. Journal of "
+        "Clinical Epidemiology, 60, 1234-1238.",
+        "Participants saved by a covariate.",
+    ),
+    Source(
+        "O'Hagan et al. 2005",
+        "O'Hagan, A., Stevens, J. W., & Campbell, M. J. (2005). Assurance in clinical trial "
+        "design. Pharmaceutical Statistics, 4, 187-201.",
+        "Expected power under an uncertain effect.",
+    ),
+    Source(
+        "Gelman & Carlin 2014",
+        "Gelman, A., & Carlin, J. (2014). Beyond power calculations: Assessing type S (sign) "
+        "and type M (magnitude) errors. Perspectives on Psychological Science, 9, 641-651.",
+        "Sign error and exaggeration of significant results.",
+    ),
+    Source(
+        "Kelley & Rausch 2006",
+        "Kelley, K., & Rausch, J. R. (2006). Sample size planning for the standardized mean "
+        "difference: Accuracy in parameter estimation via narrow confidence intervals. "
+        "Psychological Methods, 11, 363-385.",
+        "Planning for the width of the interval.",
+    ),
+    Source(
+        "Steiger & Fouladi 1997",
+        "Steiger, J. H., & Fouladi, R. T. (1997). Noncentrality interval estimation and the "
+        "evaluation of statistical models. In L. L. Harlow, S. A. Mulaik, & J. H. Steiger "
+        "(Eds.), What if there were no significance tests? (pp. 221-257). Erlbaum.",
+        "Exact intervals by inverting noncentral distributions.",
+    ),
+    Source(
+        "Steiger 2004",
+        "Steiger, J. H. (2004). Beyond the F test: Effect size confidence intervals and tests"
+        " of close fit in the analysis of variance and contrast analysis. Psychological "
+        "Methods, 9, 164-182.",
+        "Exact intervals of f and f².",
+    ),
 )
