@@ -24,7 +24,6 @@ from netsize.presentation.report.text import anchor, html_text
 
 __all__ = ["page", "table_html"]
 
-_SHORT = 16  # rows of a table that stays whole on paper
 _NO_LOADING = "default-src 'none'; style-src 'unsafe-inline'"
 
 
@@ -107,12 +106,17 @@ def table_html(table: Table) -> str:
         rows.append(f"<tr{strong}>{first}{rest}</tr>")
     notes = "".join(f'<p class="under">{html_text(note)}</p>' for note in table.notes)
     return (
-        f'<div class="table{" long" if len(table.rows) > _SHORT else ""}">'
+        f'<div class="table{" long" if _long(table) else ""}">'
         f'<div class="scroll" role="region" aria-labelledby="{key}-caption" tabindex="0">'
         f'<table id="{key}-table"><caption id="{key}-caption">{html_text(table.caption)}</caption>'
         f"<thead><tr>{head}</tr></thead><tbody>{''.join(rows)}</tbody></table></div>"
         f"{notes}</div>\n"
     )
+
+
+def _long(table: Table) -> bool:
+    """Whether it may break over pages; small ones stay whole and stand side by side."""
+    return len(table.rows) > 16 or len(table.columns) > 7
 
 
 def _side(right: bool) -> str:

@@ -16,13 +16,13 @@ from netsize.presentation.report.content import (
 )
 from netsize.presentation.report.material import Material
 
-__all__ = ["naive", "sizes"]
+__all__ = ["central_table", "naive", "sizes"]
 
 
 def naive(material: Material) -> Section:
     """The central table, its figure, and what goes wrong with the as-printed size."""
     plan = material.plan
-    blocks: list[Block] = [_central(plan), picture(plan, "sizes")]
+    blocks: list[Block] = [central_table(plan), picture(plan, "sizes")]
     if plan.consequences:
         blocks.append(_consequences(plan))
     if plan.habits:
@@ -30,7 +30,8 @@ def naive(material: Material) -> Section:
     return Section(key="naive", heading="Naive against corrected", blocks=tuple(blocks))
 
 
-def _central(plan: Plan) -> Table:
+def central_table(plan: Plan) -> Table:
+    """Every reading of the evidence with its size."""
     symbol, budget = plan.metric.symbol, plan.settings.goal == "budget"
     columns = [
         Column(title="reading of the evidence"),

@@ -15,7 +15,7 @@ from netsize.presentation.weighing import paragraph
 from netsize.synthesis.records import Estimate
 from netsize.synthesis.weighing import Weighing
 
-__all__ = ["belief", "corrections"]
+__all__ = ["belief", "corrections", "estimator_table"]
 
 _PERCENTILES = (5, 10, 20, 25, 50, 75, 80, 90, 95)
 
@@ -30,7 +30,7 @@ def corrections(material: Material) -> Section:
     else:
         blocks += [
             Paragraph(text=paragraph(weighing)),
-            _estimators(weighing),
+            estimator_table(weighing),
             picture(material.plan, "funnel"),
         ]
     blocks.append(picture(material.plan, "significant-p"))
@@ -39,7 +39,8 @@ def corrections(material: Material) -> Section:
     return Section(key="corrections", heading="Pooling and corrections", blocks=tuple(blocks))
 
 
-def _estimators(weighing: Weighing) -> Table:
+def estimator_table(weighing: Weighing) -> Table:
+    """The pooled mean and every correction."""
     return Table(
         key="estimators",
         caption="The mean effect by published methods",
@@ -113,8 +114,8 @@ def belief(material: Material) -> Section:
     plan = material.plan
     answer, fit = plan.answer, plan.literature.averaged
     text = (
-        f"Given that there is an effect, {answer.origin} has median {plan.metric.symbol} = "
-        f"{fmt.effect(answer.median)} and central 95% interval "
+        f"The planning distribution is that of {answer.origin}. Given that there is an effect, its "
+        f"median is {plan.metric.symbol} = {fmt.effect(answer.median)}, its central 95% interval "
         f"{fmt.interval(answer.low, answer.high)}. The posterior probability that the effect is "
         f"negligible is {_probability(answer.probability_negligible)}."
     )
