@@ -24,8 +24,43 @@ def read(
 ) -> None:
     """Show how each statistic of SOURCE is understood, and what cannot be read.
 
-    SOURCE is text, CSV (also with semicolons and decimal commas), TSV, a Markdown table, an .xlsx
-    workbook, or the JSON of an earlier reading. Everything is read from running text as well.
+    SOURCE is running text, one statistic a line, a table (CSV, also with
+    semicolons and decimal commas, TSV, Markdown, .xlsx) or the JSON of an
+    earlier reading. Exit code 3 when nothing at all could be read.
+
+    \b
+    What is read (a label may stand before it, up to a colon):
+      t(38) = 2.31, p = .026, d = 0.73        t(33.2) = 2.1 is Welch's
+      F(1, 56) = 5.12, ηp² = .08              F(1.54, 43.2) = 5.1
+      r(48) = .31         r = .31, n = 50     partial r(45) = .31
+      χ²(1, N = 80) = 4.5                     Wald χ²(1, N = 80) = 4.5
+      z = 2.31, n = 80                        U = 123, z = 2.31, n = 20, 22
+      d = 0.5, n = 20, 22                     η² = .08, n = 58
+      M = 5.2, SD = 1.1, n = 20 vs M = 4.4, SD = 1.2, n = 20
+      12/40 vs 22/41      30% of 40 vs 54% of 41      2x2: 12, 28; 22, 19
+      OR = 1.85, 95% CI [1.10, 3.10]          r = .31, 95% CI [.03, .54]
+      b = 0.42, SE = 0.15, df = 96            β = .28, t(96) = 2.8
+      p = .03, n = 40     F(1, 56) < 1        t(38) = 1.2, n.s.
+
+    \b
+    Settings in square brackets. After a statistic they belong to it, before
+    the first one to the whole line; several are parted by ";" or ",":
+      [paired] [one-sample] [two-groups] [correlation]   design
+      [n 20, 22]  [N 42]  [n 20 per group]               participants
+      [against]  [as predicted]                          direction
+      [one-tailed]  [two-tailed]                         the paper's test
+      [within-pair r .6]                                 of paired scores
+      [sample NAME]                                      whose data
+      [cut .01]                                          the paper's level
+      [leave out: REASON]                                read, not used
+
+    \b
+    For all lines, at the top:      defaults: [paired] [one-tailed]
+    Comments: lines that start with #, and " # ..." after a statistic.
+
+    Results of one labelled line share a sample; without a label each is its
+    own. Several tests in one sentence, each with its p and d, are told apart.
+    A printed minus sign counts as against the prediction.
     """
     from netsize.cli.source import load
     from netsize.presentation.reading import show_reading, write_reading_csv

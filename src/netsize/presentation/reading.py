@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import csv
 import io
+import shutil
 import sys
 from collections.abc import Sequence
 
@@ -26,6 +27,7 @@ _COLUMNS: tuple[Column, ...] = (
     ("effect on", "left"),
     ("check", "left"),
 )
+_NARROW = 100  # columns of text below which seven table columns cannot be read
 _FORMULA_STARTERS = ("=", "+", "-", "@", "\t", "\r")
 
 
@@ -45,8 +47,11 @@ def show_reading(reading: Reading, findings: Findings) -> None:
             )
             for r, found in zip(results, findings, strict=True)
         ]
-        show_table(_COLUMNS, rows)
-        show_text("")
+        if sys.stdout.isatty() and shutil.get_terminal_size().columns < _NARROW:
+            show_list("As understood:", [_in_words(row) for row in rows])
+        else:
+            show_table(_COLUMNS, rows)
+            show_text("")
     show_list("Printed numbers that disagree:", _disagreements(results, findings))
     show_list("Taken as meant:", _notes(results))
     show_list(
@@ -108,6 +113,18 @@ def unread_place(place: Unread) -> str:
 
 
 _LONGEST_MARK = 80
+
+
+def _in_words(row: Sequence[str]) -> str:
+    """A row for narrow terminals: the label, then what its columns say."""
+    label, printed, p, n, design, scale, check = row
+    parts = [printed]
+    parts += [f"p {p}" if p[0] in "<>" else f"p = {p}"] if p != MISSING else []
+    parts += [f"n = {n}"] if n != MISSING else []
+    parts += [design] if design != MISSING else []
+    parts += [f"effect: {scale}"] if scale != MISSING else []
+    parts += [f"check: {check}"] if check != MISSING else []
+    return f"{label}: {'; '.join(parts)}"
 
 
 def _number(value: float | None, decimals: int | None) -> str:
@@ -213,5 +230,7 @@ def _summary(reading: Reading) -> str:
 
 
 def _harmless(cell: str) -> str:
-    """Spreadsheets must not run a label as a formula."""
+    """Nothing for what is missing; spreadsheets must not run a label as a formula."""
+    if cell == MISSING:
+        return ""
     return f"'{cell}" if cell.startswith(_FORMULA_STARTERS) else cell

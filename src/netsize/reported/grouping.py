@@ -20,6 +20,7 @@ from netsize.reported.tags import merged
 __all__ = ["Group", "Line", "group_items"]
 
 _LONGEST_GAP = 100
+_PLAIN_GAPS = frozenset((", ", "; ", " ", ",", " ("))
 _STOP_BEFORE = re.compile(r"(?<!vs)[.!?][)\]\"']?[ \t]{1,12}\Z")
 _MOST_ITEMS = 40  # no test comes with more numbers; keeps the time linear
 # kinds of which a group may hold several
@@ -106,11 +107,11 @@ def _place(item: Item, line: Line, text: str) -> None:
 def _place_tag(item: Item, line: Line, group: Group | None) -> None:
     line.tags.append(item)
     if group is not None and any(i.kind != "size" for i in group.items):
-        group.settings = merged(group.settings, item.settings)
+        group.settings = merged(group.settings, item.settings or {})
         if item.fault:
             group.faults.append(item)
     else:
-        line.settings = merged(line.settings, item.settings)
+        line.settings = merged(line.settings, item.settings or {})
         if item.fault:
             line.faults.append(item)
 
@@ -121,7 +122,7 @@ def _joins(group: Group, item: Item, text: str) -> bool:
     gap = text[group.end : item.start]
     if item.kind == "other" or len(group.items) >= _MOST_ITEMS:
         return False
-    if len(gap) > 2 and _ends_sentence(gap):
+    if gap not in _PLAIN_GAPS and _ends_sentence(gap):
         return False
     if item.kind in PRIMARY:
         if group.primary is None:
@@ -129,9 +130,10 @@ def _joins(group: Group, item: Item, text: str) -> bool:
         return _same_test(group.primary, item, gap)
     if item.kind == "mean":
         return sum(i.kind == "mean" for i in group.items) < 2 or group.primary is None
-    return item.kind in _MANY or not any(
-        i.kind == item.kind and (i.kind != "smd" or i.name == item.name) for i in group.items
-    )
+    if item.kind in _MANY:
+        return True
+    same = [i for i in group.items if i.kind == item.kind]
+    return not same or (item.kind == "smd" and all(i.name != item.name for i in same))
 
 
 def _ends_sentence(gap: str) -> bool:

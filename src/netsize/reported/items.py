@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from typing import Any
 
 from netsize.reported.records import Counts, Interval, Printed
@@ -34,7 +34,7 @@ class Item:
     flags: frozenset[str] = frozenset()
     interval: Interval | None = None
     counts: tuple[Counts, ...] = ()
-    settings: dict[str, Any] = field(default_factory=dict)
+    settings: dict[str, Any] | None = None  # of a settings bracket
     notes: tuple[str, ...] = ()
     fault: str | None = None
     marked: tuple[int, int] | None = None

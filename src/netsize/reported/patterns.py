@@ -31,7 +31,7 @@ __all__ = [
     "NUMBER_HERE",
     "OTHER_HEAD",
     "PERCENT_PAIR",
-    "PLAIN_NUMBER",
+    "PLAIN_VALUE",
     "RELATION",
     "SENTENCE_END",
     "SIZES",
@@ -188,8 +188,12 @@ RELATION = re.compile(
     r"|(?:values?[ ])?(of|was|is|equals|equal[ ]to)(?![\w]))"
     r"[ \t]{0,12}"
 )
-# A number with a decimal point, closed by something that cannot go on with it.
-PLAIN_NUMBER = re.compile(r"[ ]?(-?[0-9]{0,7}\.[0-9]{1,8})(?=,[ ][A-Za-z]|[;)\n]|[ ]\[[A-Za-z]|\Z)")
+# (38) = 2.31 and (1, 56) < 5.12: a value with a decimal point, closed by something that cannot go
+# on with it. Nearly every statistic is of this form and needs none of the patterns below.
+PLAIN_VALUE = re.compile(
+    r"(?:\(([1-9][0-9]{0,5})(?:,[ ]?([1-9][0-9]{0,5}))?\))?[ ]?([=<>])[ ]?"
+    r"(-?[0-9]{0,7}\.[0-9]{1,8})(?=,[ ][A-Za-z]|[;)\n]|[ ]\[[A-Za-z]|\Z)"
+)
 NUMBER_HERE = re.compile(rf"[ \t]{{0,12}}({NUMBER})")
 NOT_FINITE = re.compile(
     r"[-+]?[ ]?(?:nan|inf(?:inity|inite)?|∞|n/?a|missing)(?![\w])", re.IGNORECASE
@@ -342,7 +346,7 @@ SOFT_BREAK = re.compile(
     r"\n(?:(?:(?<=[=<>({]\n)|(?<=[=<>({][ ]\n))(?=[ \t]{0,20}\S)"
     r"|(?<=[=<>(\[][ ]-\n)(?=[ \t]{0,20}[0-9.])"
     rf"|(?:(?<=[,;]\n)|(?<=[,;][ ]\n))(?=[ \t]{{0,20}}(?!{_STARTS_OWN})\S)"
-    r"|(?=[ \t]{0,20}(?:[=<)]|>[ ]?-?[0-9.]))"
+    r"|(?=[ \t]{0,20}(?:\)|[=<>][ ]?[<>]?[ ]?-?[0-9.]))"
     r"|(?<=\b[tTFrzZpPdgN]\n)(?=[ \t]{0,20}[(\[=<0-9])"
     rf"|(?<=[a-z]{{3}}\n)(?=[ \t]{{0,20}}(?!{_STARTS_OWN})[a-z]{{2,20}}[, ])"
     r"|(?<=[ \n](?:and|was|for)\n)(?=[ \t]{0,20}[a-zA-Z0-9]))"

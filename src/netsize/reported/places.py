@@ -41,10 +41,12 @@ class Places:
         line_end = _LINE_END.search(self._text, span.end, context_end)
         if line_end:
             context_end = line_end.start()
+        before = "..." if context_start > line_start else ""
+        after = "..." if context_end == span.end + _AROUND else ""
         return Unread(
             line=span.line,
             column=span.column,
             text=self.cut(span),
             reason=reason,
-            context=self._text[context_start:context_end],
+            context=f"{before}{self._text[context_start:context_end]}{after}",
         )

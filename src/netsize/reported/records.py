@@ -164,7 +164,8 @@ class ReportedResult:
 class Unread:
     """A place that looks like a statistic and cannot be used, with the reason and the mend.
 
-    `text` is the faulty part as printed, `context` the line (or what surrounds it) with that part.
+    `text` is the faulty part as printed, `context` its line with that part, cut short ("...")
+    where the line is long.
     """
 
     line: int

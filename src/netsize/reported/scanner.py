@@ -15,10 +15,13 @@ from netsize.reported.arguments import (
 from netsize.reported.faults import Fault
 from netsize.reported.items import Item
 from netsize.reported.pieces import PIECES
+from netsize.reported.records import Printed
 from netsize.reported.values import bare_interval, printed_number
 
 __all__ = ["scan"]
 
+# how many degrees of freedom a plain value may have: none is right for every kind
+_PLAIN_COUNT = {"t": (0, 1), "F": (0, 2), "r": (0, 1), "chi": (0, 1), "wald": (0, 1)}
 _TAKES_ARGUMENTS = frozenset(("t", "F", "r", "z", "chi", "wald", "p", "rank", "slope"))
 
 
@@ -57,6 +60,11 @@ def _item(kind: str, match: re.Match[str], text: str) -> Item | None:
 
 def _statistic(kind: str, match: re.Match[str], text: str) -> Item | None:
     start, at = match.span()
+    plain = patterns.PLAIN_VALUE.match(text, at)
+    if plain and len(plain.groups()) - plain.groups().count(None) - 2 in _PLAIN_COUNT.get(
+        kind, (0,)
+    ):
+        return _plain(kind, match[0], start, plain)
     arguments: tuple[float, ...] = ()
     sizes: tuple[int, ...] = ()
     flags: set[str] = set()
@@ -103,6 +111,19 @@ def _statistic(kind: str, match: re.Match[str], text: str) -> Item | None:
         kind, match[0], start, end, number, arguments, sizes, frozenset(flags), interval,
         notes=tuple(notes),
     )  # fmt: skip
+
+
+def _arguments_fit(kind: str, plain: re.Match[str]) -> bool:
+    given = 0 if plain[1] is None else 1 if plain[2] is None else 2
+    return given in _PLAIN_COUNT.get(kind, (0,))
+
+
+def _plain(kind: str, symbol: str, start: int, plain: re.Match[str]) -> Item:
+    first, second, relation, token = plain.groups()
+    arguments = (float(first), float(second)) if second else (float(first),) if first else ()
+    decimals = len(token) - token.index(".") - 1
+    number = Printed(float(token), relation, decimals)  # type: ignore[arg-type]  # one of = < >
+    return Item(kind, symbol, start, plain.end(), number, arguments)
 
 
 def _without_relation(

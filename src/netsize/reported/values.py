@@ -22,11 +22,6 @@ def printed_number(
     Raises Fault for a number that is part of something else (a range, a date, a quantity with its
     unit, an equation), not finite, or too large.
     """
-    plain = patterns.PLAIN_NUMBER.match(text, at)
-    if plain:  # nearly every number; the rest of this function decides the same, more slowly
-        token = plain[1]
-        decimals = len(token) - token.index(".") - 1
-        return Printed(float(token), _relation(relation, start, at), decimals), plain.end()
     found = patterns.NUMBER_HERE.match(text, at)
     if found is None:
         odd = patterns.NOT_FINITE.match(text, at)
