@@ -7,6 +7,7 @@ from typing import Any
 
 import numpy as np
 import pytest
+from scipy import stats
 
 import netsize
 from netsize.errors import SettingError
@@ -192,6 +193,41 @@ def test_assured_precision_by_simulation(design: str, effect: float) -> None:
     assert np.mean(widths <= limit) == pytest.approx(0.9, abs=0.02)
     mean = float(expected_half_width(study, n, effect, 0.95))
     assert widths.mean() == pytest.approx(mean, rel=2e-3)
+
+
+@pytest.mark.parametrize("test", ["pooled", "corrected", "arcsine"])
+@pytest.mark.parametrize("sides", [1, 2])
+def test_exact_power_of_proportions_by_brute_force(test: str, sides: int) -> None:
+    """Every outcome of 12 and 18 participants, binomial probabilities from scipy."""
+    found = solve(
+        "two-proportions", baseline=0.3, effect=0.4, n=12, ratio=1.5, test=test, sides=sides
+    )
+    z = stats.norm.isf(0.05 / sides)
+    total = 0.0
+    for x1 in range(13):
+        for x2 in range(19):
+            p1, p2, pooled, inverse = x1 / 12, x2 / 18, (x1 + x2) / 30, 1 / 12 + 1 / 18
+            off, limit = p2 - p1, z * np.sqrt(pooled * (1 - pooled) * inverse)
+            if test == "arcsine":
+                off, limit = 2 * np.arcsin(np.sqrt([p2, p1])) @ [1, -1], z * np.sqrt(inverse)
+            if test == "corrected":
+                limit += inverse / 2
+            if (abs(off) if sides == 2 else off) > limit:
+                total += stats.binom.pmf(x1, 12, 0.3) * stats.binom.pmf(x2, 18, 0.7)
+    assert found.exact_power() == pytest.approx(total, abs=1e-12)
+    assert found.to_dict()["exact_power"] == pytest.approx(total, abs=1e-12)
+
+
+def test_exact_power_of_one_proportion() -> None:
+    """The sign test of Cohen (1988, ch. 5): 30 pairs, .5 against .75, against scipy's binomial."""
+    found = solve("one-proportion", effect=0.25, n=30)
+    assert found.exact_power() == pytest.approx(
+        stats.binom.sf(20, 30, 0.75) + stats.binom.cdf(9, 30, 0.75), abs=1e-12
+    )
+    large = solve("one-proportion", effect=0.02)
+    assert large.exact_power() == pytest.approx(float(large.power), abs=0.01)
+    assert solve("one-proportion", effect=0.001).exact_power() is None
+    assert solve("two-groups", effect=0.5).exact_power() is None
 
 
 def test_ten_thousand_effects_equal_one_by_one() -> None:

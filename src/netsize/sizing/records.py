@@ -6,6 +6,7 @@ from dataclasses import asdict, dataclass, fields
 from typing import TYPE_CHECKING, Any
 
 import numpy as np
+from scipy.special import ndtri
 
 from netsize.numerics.arrays import Array, BoolArray, IntArray
 from netsize.sizing.aftermath import aftermath
@@ -121,6 +122,22 @@ class Sizing:
         """The power that the goal speaks of; .80 for a half-width."""
         return 0.8 if self.goal.kind == "half-width" else self.goal.target
 
+    def exact_power(self) -> float | None:
+        """For one study of proportions its power from the binomial distribution, else None.
+
+        A rejection region of whole counts makes it jump about the normal approximation, so it does
+        not choose the size. Not given for clusters, whose counts are not binomial.
+        """
+        m = self.study.modifiers
+        if self.effect.size != 1 or not self.finite.all() or m.cluster_size > 1:
+            return None
+        return self.study.design.exact_power(
+            self.n_per_group.reshape(-1).astype(float),
+            float(self.own_effect.flat[0]),
+            -float(ndtri(self.study.tail)),
+            m.sides,
+        )
+
     def settings(self) -> dict[str, Any]:
         """Design options and modifiers as plain values."""
         design = self.study.design
@@ -144,6 +161,9 @@ class Sizing:
             answer["cost"] = _plain(self.cost, self.finite)
         if not np.isnan(self.ceiling):
             answer["ceiling"] = self.ceiling
+        exact = self.exact_power()
+        if exact is not None:
+            answer["exact_power"] = exact
         if self.goal.kind == "given":
             found = self.abilities()
             answer |= {

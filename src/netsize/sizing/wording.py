@@ -16,6 +16,7 @@ def assumptions(sizing: Sizing) -> tuple[str, ...]:
     """One sentence for every assumption and modifier in force."""
     return (
         *sizing.study.design.assumptions(),
+        *_exact(sizing),
         _level(sizing),
         *_conversion(sizing),
         *_allocation(sizing),
@@ -23,6 +24,13 @@ def assumptions(sizing: Sizing) -> tuple[str, ...]:
         *_clusters(sizing),
         *_loss(sizing),
     )
+
+
+def _exact(sizing: Sizing) -> tuple[str, ...]:
+    exact = sizing.exact_power()
+    if exact is None:
+        return ()
+    return (f"exact power of the test at this size, from the binomial distribution: {exact:.3f}",)
 
 
 def _level(sizing: Sizing) -> str:

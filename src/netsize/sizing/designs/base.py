@@ -86,6 +86,13 @@ class Design(ABC):
         """SE of the estimate where the test is a normal one; nan elsewhere."""
         return np.full(np.broadcast(sizes[0], effect).shape, np.nan)
 
+    def exact_power(self, sizes: Array, effect: float, critical: float, sides: int) -> float | None:
+        """Power without the normal approximation where the design knows it; sizes (groups,).
+
+        `critical` is the normal quantile of one tail.
+        """
+        return None
+
     def signal(self, effect: Array) -> Array:
         """Its sign tells whether larger studies see the effect: above 0 they do, in the predicted
         direction; 0 never; below 0 only in the opposite one."""

@@ -8,7 +8,8 @@ from typing import ClassVar
 import numpy as np
 
 from netsize.errors import SettingError
-from netsize.numerics.arrays import Array
+from netsize.numerics.arrays import Array, BoolArray
+from netsize.sizing.binomial import LARGEST_EXACT, rejection_probability
 from netsize.sizing.checks import between
 from netsize.sizing.designs.base import Design, EffectMetric
 from netsize.sizing.laws import NORMAL, Law, Parameters
@@ -122,6 +123,26 @@ class TwoProportions(Design):
         shift = inverse / 2 / spread if self.test == "corrected" else np.zeros_like(spread)
         return null / spread, shift
 
+    def exact_power(self, sizes: Array, effect: float, critical: float, sides: int) -> float | None:
+        n1, n2 = (int(n) for n in sizes)
+        if n1 + n2 > LARGEST_EXACT:
+            return None
+
+        def rejects(x1: Array, x2: Array) -> BoolArray:
+            p1, p2 = x1 / n1, x2 / n2
+            inverse = 1 / n1 + 1 / n2
+            if self.test == "arcsine":
+                statistic, limit = _angle(p2) - _angle(p1), critical * np.sqrt(inverse)
+            else:
+                pooled = (x1 + x2) / (n1 + n2)
+                limit = critical * np.sqrt(pooled * (1 - pooled) * inverse)
+                statistic = p2 - p1
+                if self.test == "corrected":
+                    limit = limit + inverse / 2
+            return np.asarray(np.abs(statistic) > limit if sides == 2 else statistic > limit)
+
+        return rejection_probability((n1, n2), (self.baseline, self.baseline + effect), rejects)
+
     def assumptions(self) -> tuple[str, ...]:
         kind = {
             "pooled": "pooled variance, no continuity correction",
@@ -169,6 +190,18 @@ class OneProportion(Design):
         p = self.baseline + effect
         null = self.baseline * (1 - self.baseline)
         return np.sqrt(null / (p * (1 - p))), np.asarray(0.0)
+
+    def exact_power(self, sizes: Array, effect: float, critical: float, sides: int) -> float | None:
+        n = int(sizes[0])
+        if n > LARGEST_EXACT:
+            return None
+        limit = critical * np.sqrt(self.baseline * (1 - self.baseline) / n)
+
+        def rejects(x: Array) -> BoolArray:
+            off = x / n - self.baseline
+            return np.asarray(np.abs(off) > limit if sides == 2 else off > limit)
+
+        return rejection_probability((n,), (self.baseline + effect,), rejects)
 
     def assumptions(self) -> tuple[str, ...]:
         return (f"z test of one proportion against {self.baseline:g}; normal approximation",)
