@@ -14,6 +14,7 @@ from pathlib import Path
 import pytest
 
 from netsize.cli.main import main
+from netsize.rehearsal.summary import summary
 
 ROOT = Path(__file__).parents[1]
 README = ROOT / "README.md"
@@ -55,8 +56,18 @@ def test_the_check_script_runs_the_test_command_of_the_readme():
     assert commands[1].endswith("python -m pytest")
 
 
+def _calibration() -> str:
+    table = (ROOT / "data" / "calibration.csv").read_text(encoding="utf-8")
+    return f"```text\n{summary(table)}```"
+
+
+def test_the_calibration_shown_is_that_of_the_committed_table():
+    assert _calibration() in README.read_text(encoding="utf-8")
+
+
 def _rewrite() -> None:
     text = README.read_text(encoding="utf-8")
+    text = re.sub(r"```text\nworlds .*?```", lambda _: _calibration(), text, flags=re.DOTALL)
     made = BLOCK.sub(lambda m: f"```console\n$ {m[1]}\n{_output(m[1])}```", text)
     README.write_text(made, encoding="utf-8")
 
