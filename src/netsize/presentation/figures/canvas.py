@@ -1,8 +1,8 @@
 """What all figures share: colours, sizes, a frame with room for labels, text that keeps its place.
 
 Figures are drawn on `matplotlib.figure.Figure` alone: no pyplot, no global settings. Lengths are
-in millimetres. Colours are those of Okabe & Ito (2008), which colour-blind readers tell apart; in
-grey, markers and line styles carry the difference.
+in millimetres. Blue and a darkened vermilion are those of Okabe & Ito (2008), which colour-blind
+readers tell apart and which carry small text on white; in grey, markers and line styles differ.
 """
 
 from __future__ import annotations
@@ -47,7 +47,7 @@ __all__ = [
 COLUMN = 85.0  # one column of a journal
 FONT = ["DejaVu Sans"]  # comes with matplotlib, so that every machine draws the same
 SIZE = 6.5  # points
-BLUE, ORANGE = "#0072B2", "#D55E00"
+BLUE, ORANGE = "#0072B2", "#B84E00"
 INK, GREY, PALE = "#1A1A1A", "#5F5F5F", "#C5DCEA"
 _MM = 1 / 25.4
 _POINT = 25.4 / 72

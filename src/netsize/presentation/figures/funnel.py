@@ -98,7 +98,7 @@ def funnel_figure(plan: Plan) -> FunnelFigure:
 def draw_funnel(shown: FunnelFigure, *, ax: Axes | None = None) -> Figure:
     """Draw it; regions of significance only where effects have a sign."""
     metric = METRICS[shown.metric]
-    ax = canvas.axes(ax, height=70.0, left=9.0, top=3.0)
+    ax = canvas.axes(ax, height=70.0, left=11.0, top=3.0)
     deepest = 1.12 * max((p.se for p in shown.points), default=0.5)
     low, high = _limits(shown, deepest, metric.signed)
     over = canvas.frame(ax, low, high)

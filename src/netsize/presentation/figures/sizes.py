@@ -104,7 +104,7 @@ def draw_sizes(shown: SizesFigure, *, ax: Axes | None = None) -> Figure:
     """Draw the curve and its marks; names stand in a column at the right, lines lead to them."""
     placed = [m for m in shown.marks if m.n_total is not None and m.effect is not None]
     lost = [m for m in shown.marks if m.n_total is None or m.effect is None]
-    ax = canvas.axes(ax, height=max(66.0, 18.0 + 3.1 * len(shown.marks)), left=13.0, top=3.0)
+    ax = canvas.axes(ax, height=max(66.0, 18.0 + 3.1 * len(shown.marks)), left=15.0, top=3.0)
     curve = np.array([shown.curve.effects, shown.curve.n_total], dtype=float)
     sizes = [float(n) for n in shown.curve.n_total] + [float(m.n_total or 1) for m in placed]
     if shown.fixed is not None:
