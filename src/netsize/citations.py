@@ -331,4 +331,10 @@ _SOURCES = (
         "Methods, 9, 164-182.",
         "Exact intervals of f and f².",
     ),
+    Source(
+        "Bakker & Wicherts 2011",
+        "Bakker, M., & Wicherts, J. M. (2011). The (mis)reporting of statistical results in "
+        "psychology journals. Behavior Research Methods, 43, 666-678.",
+        "Checking printed p-values against their statistics within rounding.",
+    ),
 )

@@ -9,7 +9,7 @@ from netsize.errors import ReadingError
 from netsize.reported import read
 
 LINES = Path(__file__).with_name("corpus.tsv").read_text(encoding="utf-8").splitlines()
-CASES = [line.split("\t") for line in LINES if not line.startswith("# ")]
+CASES = [line.split("\t") for line in LINES if not line.startswith("## ")]
 BEFORE = "Earlier work is reviewed elsewhere.\n\n"
 AFTER = "\n\nNothing else was found in these data.\n"
 

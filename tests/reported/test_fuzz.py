@@ -1,5 +1,6 @@
 """Whatever comes in, only results or reading errors come out, in time linear in the length."""
 
+import json
 import math
 from contextlib import suppress
 from pathlib import Path
@@ -17,7 +18,7 @@ LINES = Path(__file__).with_name("corpus.tsv").read_text(encoding="utf-8").split
 REAL = [
     line.split("\t")[0].replace("\\n", "\n").replace("\\t", "\t")
     for line in LINES
-    if not line.startswith("# ")
+    if not line.startswith("## ")
 ]
 BITS = st.sampled_from(
     [
@@ -61,6 +62,7 @@ def examine(text):
         for finding in check(r):
             assert finding.message
     assert len({r.label for r in reading.results}) == len(reading.results)
+    assert read(json.dumps(reading.to_dict(), allow_nan=False)) == reading
 
 
 @FEW

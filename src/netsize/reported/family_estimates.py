@@ -208,7 +208,16 @@ def from_smd(context: Context) -> Fields:
         "design_origin": origin,
         "metric": name,
         "interval": item.interval,
+        "notes": _total_note(context),
     }
+
+
+def _total_note(context: Context) -> tuple[str, ...]:
+    """A small n is often one group's size; beside a d there is no df to tell."""
+    sizes = context.sizes
+    if len(sizes.n) != 1 or sizes.each or sizes.origin != "printed" or context.design:
+        return ()
+    return (f"n = {sizes.n[0]} read as all participants; [n 20, 20] gives group sizes",)
 
 
 def from_share(context: Context) -> Fields:

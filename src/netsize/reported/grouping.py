@@ -130,17 +130,28 @@ def _joins(group: Group, item: Item, text: str) -> bool:
         return _same_test(group.primary, item, gap)
     if item.kind == "mean":
         return sum(i.kind == "mean" for i in group.items) < 2 or group.primary is None
+    if item.kind == "size" and not _describes(group, gap):
+        return False
     if item.kind in _MANY:
         return True
+    if group.primary is None and all(i.kind == "size" for i in group.items):
+        return _only_connectors(gap, patterns.SAMPLE_WORDS)  # "n = 40, p = .03", not "N = 80 ..."
     same = [i for i in group.items if i.kind == item.kind]
     return not same or (item.kind == "smd" and all(i.name != item.name for i in same))
 
 
+def _describes(group: Group, gap: str) -> bool:
+    """Whether a number of participants speaks of this group's test, not of the next one's."""
+    if group.primary is None and any(i.kind in ("mean", "size") for i in group.items):
+        return True
+    return _only_connectors(gap, patterns.SAMPLE_WORDS)
+
+
 def _ends_sentence(gap: str) -> bool:
-    found = patterns.SENTENCE_END.search(gap)
-    if found is None:
-        return False
-    return patterns.ABBREVIATION.search(gap, 0, found.start()) is None
+    return any(
+        patterns.ABBREVIATION.search(gap, 0, found.start()) is None
+        for found in patterns.SENTENCE_END.finditer(gap)
+    )
 
 
 def _same_test(before: Item, item: Item, gap: str) -> bool:
@@ -152,13 +163,30 @@ def _same_test(before: Item, item: Item, gap: str) -> bool:
         return beta or item.kind in ("t", "z", "wald")
     if before.kind == "odds":
         return item.kind in ("z", "wald", "chi") and not item.arguments[1:]
+    if not _only_connectors(gap):
+        return False
     if before.kind == "pair":
-        return item.kind == "chi" and _only_connectors(gap)
+        return item.kind == "chi"
+    if "and" in gap:
+        return False
     if before.kind == "r" and not before.arguments:
-        return item.kind == "t" and _only_connectors(gap)
+        return item.kind == "t" and _same_size(item, before)
     if item.kind == "r":
-        return not item.arguments and not item.sizes and _only_connectors(gap)
+        return not item.arguments and not item.sizes and _same_size(before, item)
     return False
+
+
+def _same_size(test: Item, correlation: Item) -> bool:
+    """Whether r is the one that t or F implies, r² = t²/(t² + df), as far as can be told."""
+    if test.number is None or correlation.number is None or not test.arguments:
+        return True
+    square = abs(test.number.value)
+    if test.kind == "t":
+        square *= square
+    elif test.kind != "F" or test.arguments[0] != 1:
+        return test.kind != "F"
+    implied = (square / (square + test.arguments[-1])) ** 0.5
+    return bool(abs(implied - abs(correlation.number.value)) < 0.02)
 
 
 def _leading(before: Item | None, item: Item) -> Item:
@@ -173,5 +201,6 @@ def _rank_sum(item: Item) -> bool:
     return item.kind == "t" and item.name == "T" and not item.arguments
 
 
-def _only_connectors(gap: str) -> bool:
-    return all(w.lower() in patterns.CONNECTORS for w in patterns.WORD.findall(gap))
+def _only_connectors(gap: str, more: frozenset[str] = frozenset()) -> bool:
+    words = (w.lower() for w in patterns.WORD.findall(gap))
+    return all(w in patterns.CONNECTORS or w in more for w in words)

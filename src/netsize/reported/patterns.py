@@ -26,6 +26,8 @@ __all__ = [
     "HEADS",
     "INTERVAL",
     "LABEL_WITHIN_LINE",
+    "LEVEL_AFTER",
+    "LEVEL_BEFORE",
     "MARKS",
     "NOT_FINITE",
     "NUMBER_HERE",
@@ -33,6 +35,7 @@ __all__ = [
     "PERCENT_PAIR",
     "PLAIN_VALUE",
     "RELATION",
+    "SAMPLE_WORDS",
     "SENTENCE_END",
     "SIZES",
     "SIZE_EACH",
@@ -206,6 +209,8 @@ MARKS = re.compile(
 TRAILING = re.compile(
     r"(?P<digits>[0-9])"
     r"|(?P<broken>[ ]\.[ ]?[0-9]|\.[ \n]{1,12}[0-9])"
+    r"|(?P<letter>\.[A-Za-z]|[.,][OoIl][0-9])"
+    r"|(?P<spaced>[ ][0-9])"
     r"|(?P<stuck>(?!ns\b)[\w^])"
     r"|(?P<more>[.,:/][0-9])"
     r"|[ ]?(?P<percent>%)"
@@ -269,6 +274,14 @@ DESIGN_WORDS = re.compile(
     r"(?:[ -](?:t[ -]?tests?|ANOVAs?|analysis[ ]of[ ]variance)\b[^.;:\n]{0,60})?[ :,(-]{0,3}\Z"
 )
 TAILS_WORDS = re.compile(r"\b(one|1|two|2)[ -]?(?:tailed|sided|tail)\b", re.IGNORECASE)
+# A level of significance is no result: alpha was p < .05; p < .05 was considered significant.
+LEVEL_BEFORE = re.compile(
+    r"(?:\balpha|α|threshold|criterion|significance[ ]level|level[ ]of[ ]significance|"
+    r"significant[ ](?:if|when)|set[ ]at)[^.;:,]{0,25}\Z"
+)
+LEVEL_AFTER = re.compile(
+    r"[ ](?:was|were|is|are)[ ](?:considered|taken|used|set|regarded|deemed|chosen)"
+)
 CRITICAL_VALUE = re.compile(r"\bcritical[ ](?:values?|[tFrz]\b|χ)")
 AGAINST_WORDS = re.compile(
     r"(?:contrary|opposite)[ ](?:to[ ])?(?:what[ ](?:was|we)[ ])?(?:the[ ]|our[ ])?"
@@ -276,6 +289,13 @@ AGAINST_WORDS = re.compile(
     r"|opposite[ ](?:direction|sign)|against[ ](?:the[ ]|our[ ])?(?:prediction|hypothes)"
 )
 # Words that may stand between a test and a further statistic of the same test.
+SAMPLE_WORDS = frozenset(
+    (
+        *("in", "for", "from", "based", "on", "sample", "whole", "total", "full", "participants"),
+        *("people", "patients", "group", "groups", "condition", "conditions", "per", "our", "this"),
+        *("each", "all", "vs", "versus", "respectively", "control", "treatment", "men", "women"),
+    )
+)
 CONNECTORS = frozenset(
     [
         "and",

@@ -65,7 +65,7 @@ def row_group(cells: Cells) -> Row:
         if item.kind in ("t", "F", "r", "z", "chi", "odds", "pair", "slope", "estimate"):
             row.group.primary = row.group.primary or item
     row.group.start = first
-    row.group.end = max(c.end for c in cells.values())
+    row.group.end = max((c.end for c in cells.values()), default=first)
     return row
 
 

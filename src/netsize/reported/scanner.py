@@ -60,6 +60,8 @@ def _item(kind: str, match: re.Match[str], text: str) -> Item | None:
 
 def _statistic(kind: str, match: re.Match[str], text: str) -> Item | None:
     start, at = match.span()
+    if kind == "p" and _is_level(text, match):
+        return None
     plain = patterns.PLAIN_VALUE.match(text, at)
     if plain and len(plain.groups()) - plain.groups().count(None) - 2 in _PLAIN_COUNT.get(
         kind, (0,)
@@ -111,6 +113,16 @@ def _statistic(kind: str, match: re.Match[str], text: str) -> Item | None:
         kind, match[0], start, end, number, arguments, sizes, frozenset(flags), interval,
         notes=tuple(notes),
     )  # fmt: skip
+
+
+def _is_level(text: str, match: re.Match[str]) -> bool:
+    """Whether this p names a level of significance instead of a result."""
+    start, end = match.span()
+    if patterns.LEVEL_BEFORE.search(text[max(start - 50, 0) : start]):
+        return True
+    value = patterns.RELATION.match(text, end)
+    number = patterns.NUMBER_HERE.match(text, value.end()) if value else None
+    return number is not None and patterns.LEVEL_AFTER.match(text, number.end()) is not None
 
 
 def _arguments_fit(kind: str, plain: re.Match[str]) -> bool:

@@ -71,6 +71,12 @@ def _printed(group: Group) -> Sizes:
         found = [i for i in found if "capital" in i.flags]
         if not found:
             return NO_SIZES
+    if not parts and len({i.sizes for i in found}) > 1:
+        raise Fault(
+            "several totals N are printed beside it; add the one that belongs to it, as in [n 40]",
+            found[0].start,
+            found[-1].end,
+        )
     only = parts[0] if parts else found[0]
     return Sizes(only.sizes, "each" in only.flags, "printed")
 

@@ -11,7 +11,7 @@ from netsize.reported.records import Interval, Printed, Relation
 
 __all__ = ["bare_interval", "printed_number"]
 
-_UNITS_OF_P = frozenset(("p", "padjusted"))
+_P_KINDS = frozenset(("p", "padjusted"))
 
 
 def printed_number(
@@ -54,19 +54,23 @@ def _around(text: str, start: int, end: int) -> str:
 def _refuse_trailing(text: str, end: int, kind: str, start: int, token: str) -> None:
     follows = patterns.TRAILING.match(text, end)
     if follows is None:
-        if kind not in _UNITS_OF_P and patterns.CHAINED.match(text, end):
+        if kind not in _P_KINDS and patterns.CHAINED.match(text, end):
             raise Fault("this reads as an inequality or equation, not one result", start, end + 1)
         return
     what = follows.lastgroup or ""
-    if what == "arithmetic" and kind in _UNITS_OF_P:
+    if what == "arithmetic" and kind in _P_KINDS:
         return
+    if what in ("unit", "percent") and kind in ("mean", "sd", "se"):
+        return  # "M = 24.2 years": means have units, test statistics have none
     if what == "list" and kind == "size":
         return
-    if what == "broken" and "." in token:
+    if what in ("broken", "letter", "spaced") and "." in token:
         return  # a sentence ends, and the next one starts with a number
     reason = {
         "digits": "the number has too many digits",
         "broken": "the number is broken in two",
+        "letter": "letters are stuck to the number",
+        "spaced": "another number follows; a decimal point may be lost",
         "stuck": "letters or signs are stuck to the number",
         "more": "the number goes on as a date, version, ratio or list",
         "percent": "a percentage stands where the statistic should be",
