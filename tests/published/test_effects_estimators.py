@@ -8,7 +8,6 @@ from __future__ import annotations
 import mpmath as mp
 import numpy as np
 import pytest
-from numpy.typing import NDArray
 from scipy import special, stats
 
 from netsize.effect_sizes import estimators
@@ -74,7 +73,7 @@ def test_unbiased_correlation_at_40_digits(r, n):
 @pytest.mark.parametrize(
     ("rho", "n"), [(0.5, 20), (0.3, 12), (0.8, 15), (0.6, 4), (-0.9, 5), (0.4, 3), (0.95, 60)]
 )
-def test_unbiased_correlation_is_unbiased(rho, n):
+def test_unbiased_correlation_is_unbiased(panels, rho, n):
     # the third parameter (n-1)/2 in pairs, a common slip, would give .49943 for (.5, 20)
     z, weights = panels([-17, -8, -3, 0, np.arctanh(rho), 3, 8, 17])
     r = np.tanh(z)
@@ -87,7 +86,7 @@ def test_unbiased_correlation_is_unbiased(rho, n):
 
 @pytest.mark.parametrize("theta", [0, 0.4, 1.5])
 @pytest.mark.parametrize("m", [2, 3, 5, 18, 100])
-def test_g_and_its_variance_are_unbiased(theta, m):
+def test_g_and_its_variance_are_unbiased(panels, theta, m):
     # two equal groups; t = √m sinh v turns the power tails of t into exponential ones
     v0 = 4 / (m + 2)
     end = 6 + 40 / max(m - 2, 1)
@@ -101,14 +100,6 @@ def test_g_and_its_variance_are_unbiased(theta, m):
         variance = weights @ (g * g * height) - theta**2
         expected = weights @ (estimators.unbiased_variance(g, m, v0) * height)
         assert expected == pytest.approx(variance, rel=1e-8)
-
-
-def panels(ends: list[float]) -> tuple[NDArray[np.float64], NDArray[np.float64]]:
-    """Nodes and weights of a Gauss-Legendre rule of 80 points on each stretch between `ends`."""
-    x, w = np.polynomial.legendre.leggauss(80)
-    edges = np.unique(ends)
-    half = np.diff(edges) / 2
-    return (edges[:-1, None] + half[:, None] * (1 + x)).ravel(), (half[:, None] * w).ravel()
 
 
 @pytest.mark.parametrize(("df1", "df2", "ncp"), [(2, 57, 8.0), (1, 5, 0.0), (4, 9, 30.0)])

@@ -63,7 +63,8 @@ def lower_tail(f: ArrayLike, df1: ArrayLike, df2: ArrayLike, ncp: ArrayLike) -> 
     """P(F ≤ f); f ≥ 0 (0 below), df₁, df₂ > 0, λ ≥ 0, broadcast."""
     f, df1, df2, ncp = broadcast(f, df1, df2, ncp)
     with np.errstate(all="ignore"):
-        tail = ncfdtr(df1, df2, ncp, np.maximum(f, 0.0))
+        # the library fails at tiny noncentralities, whose tail is the central one
+        tail = ncfdtr(df1, df2, np.where(ncp < 1e-30, 0.0, ncp), np.maximum(f, 0.0))
         below = f < (df1 + ncp) / df1
     return repaired(tail, below, ~np.isnan(f) & (df1 > 0) & (df2 > 0) & (ncp >= 0))
 

@@ -73,10 +73,15 @@ def log_density(t: ArrayLike, df: ArrayLike, ncp: ArrayLike) -> Array:
 
 
 def lower_tail(t: ArrayLike, df: ArrayLike, ncp: ArrayLike) -> Array:
-    """P(T ≤ t) for noncentral t; arguments and shapes as in `log_density`, infinite t allowed."""
+    """P(T ≤ t) for noncentral t; arguments and shapes as in `log_density`, infinite t allowed.
+
+    Relative error about 1e-9 where t and δ have one sign. Where they differ the library's value has
+    an absolute error up to 1e-13: enough beside the other tail, not for its own logarithm.
+    """
     t, df, ncp = broadcast(t, df, ncp)
     with np.errstate(all="ignore"):
-        tail = nctdtr(df, ncp, t)
+        # the library fails beside 0, where the tail is that of 0 to double precision
+        tail = nctdtr(df, ncp, np.where(np.abs(t) < 1e-30, 0.0, t))
         # Some releases of scipy return nan or a value outside [0, 1] far out on the side opposite
         # to the noncentrality, where the probability is 0 or 1 to double precision.
         far = np.where(t < ncp, 0.0, 1.0)

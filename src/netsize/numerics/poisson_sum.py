@@ -10,7 +10,7 @@ from netsize.numerics.gamma import stirling_remainder
 
 __all__ = ["log_mixture"]
 
-_FAR = 100.0  # mode from which the terms are 0 to double precision at both ends
+_FAR = 120.0  # mode from which 10 standard deviations, at most √mode each, stay above j = 0
 _STEP = 0.6  # step in standard deviations; the rule's error is below 2 exp(-2π²/0.6²) < 1e-23
 _REACH = 10.0  # standard deviations summed on each side
 _BLOCK = 512  # elements at a time, of similar mode
