@@ -53,7 +53,7 @@ def show_reading(reading: Reading, findings: Findings) -> None:
             show_table(_COLUMNS, rows)
             show_text("")
     show_list("Printed numbers that disagree:", _disagreements(results, findings))
-    show_list("Taken as meant:", _notes(results))
+    show_list("Assumed while reading:", _notes(results))
     show_list(
         "Left out as asked:",
         [f"{r.label}: {r.left_out}" for r in results if r.left_out is not None],
@@ -94,7 +94,9 @@ def statistic(result: ReportedResult) -> str:
     if result.family in ("smd", "eta2", "estimate"):
         symbol = result.metric or symbol
     df = f"({', '.join(f'{d:g}' for d in result.df)})" if result.df else ""
-    text = f"{symbol}{df} {result.relation} {_number(result.value, result.decimals)}"
+    text = f"{symbol}{df}"
+    if result.value is not None:
+        text += f" {result.relation} {_number(result.value, result.decimals)}"
     if result.standard_error is not None:
         text += f", SE = {result.standard_error:.3g}"
     if result.interval is not None:
@@ -177,6 +179,8 @@ def _scale(result: ReportedResult) -> str:
 
 
 def _verdict(result: ReportedResult, findings: tuple[Finding, ...]) -> str:
+    if result.family == "p" or (result.value is None and not result.groups):
+        return MISSING
     if not findings:
         return "agrees" if result.p is not None or result.also else MISSING
     if any(f.changes_significance for f in findings):
