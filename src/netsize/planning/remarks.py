@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import re
+
 import numpy as np
 
 from netsize.planning.answer import Answer
@@ -13,6 +15,7 @@ from netsize.sizing.study import Study
 
 __all__ = ["assumptions", "warnings"]
 
+_NUMBER = re.compile(r"\d+(?:\.\d+)?")
 _FEW = 5  # results below which one more could change much
 _OUTLANDISH = 2.5  # prior standard deviations beyond which effects are doubted
 
@@ -24,19 +27,12 @@ def assumptions(
     study_notes: tuple[str, ...],
 ) -> tuple[str, ...]:
     """Every assumption: about single results (grouped where the words agree), then of the plan."""
-    by_text: dict[str, list[str]] = {}
-    for row in literature.rows:
-        for text in row.assumptions:
-            by_text.setdefault(text, []).append(row.label)
     everyone = len(literature.rows)
-    single = [
-        f"{'all results' if len(labels) == everyone > 1 else ', '.join(labels)}: {text}"
-        for text, labels in by_text.items()
-    ]
     shared = len(literature.samples) < everyone
     p = literature.averaged.priors
     cuts = ", ".join(f"{c:g}" for c in settings.cut_points)
     general = [
+        *_single(literature),
         *literature.table.notes,
         *study_notes,
         *study.design.assumptions(),
@@ -52,7 +48,27 @@ def assumptions(
             f"results of one sample correlate {settings.within_sample_correlation:g}; set with "
             "--within-sample-correlation"
         )
-    return (*single, *general)
+    return tuple(general)
+
+
+def _single(literature: Literature) -> list[str]:
+    """Assumptions about single results; those alike but for their numbers are told once."""
+    alike: dict[str, dict[str, list[str]]] = {}
+    for row in literature.rows:
+        for text in row.assumptions:
+            texts = alike.setdefault(_NUMBER.sub("#", text), {})
+            texts.setdefault(text, []).append(row.label)
+    out = []
+    for texts in alike.values():
+        (text, labels), *others = texts.items()
+        rest = [label for _, more in others for label in more]
+        if len(labels) + len(rest) == len(literature.rows) > 1 and not rest:
+            out.append(f"all results: {text}")
+        elif rest:
+            out.append(f"{', '.join(labels)}: {text}; with their own numbers, {', '.join(rest)}")
+        else:
+            out.append(f"{', '.join(labels)}: {text}")
+    return out
 
 
 def warnings(
