@@ -58,17 +58,29 @@ def _single(literature: Literature) -> list[str]:
         for text in row.assumptions:
             texts = alike.setdefault(_NUMBER.sub("#", text), {})
             texts.setdefault(text, []).append(row.label)
+    everyone = [row.label for row in literature.rows]
     out = []
     for texts in alike.values():
         (text, labels), *others = texts.items()
         rest = [label for _, more in others for label in more]
-        if len(labels) + len(rest) == len(literature.rows) > 1 and not rest:
-            out.append(f"all results: {text}")
-        elif rest:
-            out.append(f"{', '.join(labels)}: {text}; with their own numbers, {', '.join(rest)}")
-        else:
-            out.append(f"{', '.join(labels)}: {text}")
+        told = f"{_names(labels, everyone)}: {text}"
+        if rest:
+            known = {*labels, *rest}
+            told += f"; likewise, with its own numbers, each of {_names(rest, everyone, known)}"
+        out.append(told)
     return out
+
+
+def _names(labels: list[str], everyone: list[str], known: set[str] | None = None) -> str:
+    """The labels, or who is missing from them where that is shorter.
+
+    `known` also counts as named; labels may hold commas, so semicolons part them.
+    """
+    missing = [x for x in everyone if x not in (known or set(labels))]
+    if len(everyone) == 1 or len(labels) <= 2 + len(missing):
+        return "; ".join(labels)
+    whom = "the others" if known else "all results"
+    return f"{whom} but {'; '.join(missing)}" if missing else whom
 
 
 def warnings(
