@@ -337,4 +337,77 @@ _SOURCES = (
         "psychology journals. Behavior Research Methods, 43, 666-678.",
         "Checking printed p-values against their statistics within rounding.",
     ),
+    Source(
+        "Hedges 1983",
+        "Hedges, L. V. (1983). A random effects model for effect sizes. Psychological "
+        "Bulletin, 93, 388-395.",
+        "The unbiased variance of Hedges' g.",
+    ),
+    Source(
+        "Olkin & Pratt 1958",
+        "Olkin, I., & Pratt, J. W. (1958). Unbiased estimation of certain correlation "
+        "coefficients. Annals of Mathematical Statistics, 29, 201-211.",
+        "The unbiased correlation.",
+    ),
+    Source(
+        "Kelley 1935",
+        "Kelley, T. L. (1935). An unbiased correlation ratio measure. Proceedings of the "
+        "National Academy of Sciences, 21, 554-559.",
+        "ε², the nearly unbiased share of variance.",
+    ),
+    Source(
+        "Hays 1963",
+        "Hays, W. L. (1963). Statistics for psychologists. New York: Holt, Rinehart & Winston.",
+        "ω², the nearly unbiased share of variance.",
+    ),
+    Source(
+        "Okada 2017",
+        "Okada, K. (2017). Negative estimate of variance-accounted-for effect size: How often"
+        " it is obtained, and what happens if it is treated as zero. Behavior Research "
+        "Methods, 49, 979-987.",
+        "Keeping negative ε², ω² and f² before pooling.",
+    ),
+    Source(
+        "Johnson, Kotz & Balakrishnan 1995",
+        "Johnson, N. L., Kotz, S., & Balakrishnan, N. (1995). Continuous univariate "
+        "distributions (2nd ed., Vol. 2). New York: Wiley.",
+        "Noncentral t, F and chi-square; moments behind the unbiased f².",
+    ),
+    Source(
+        "Hasselblad & Hedges 1995",
+        "Hasselblad, V., & Hedges, L. V. (1995). Meta-analysis of screening and diagnostic "
+        "tests. Psychological Bulletin, 117, 167-178.",
+        "Odds ratio to d by the logistic law.",
+    ),
+    Source(
+        "Chinn 2000",
+        "Chinn, S. (2000). A simple method for converting an odds ratio to effect size for "
+        "use in meta-analysis. Statistics in Medicine, 19, 3127-3131.",
+        "Odds ratio to d by the logistic law.",
+    ),
+    Source(
+        "Woolf 1955",
+        "Woolf, B. (1955). On estimating the relation between blood group and disease. Annals"
+        " of Human Genetics, 19, 251-253.",
+        "The variance of a log odds ratio.",
+    ),
+    Source(
+        "Haldane 1956",
+        "Haldane, J. B. S. (1956). The estimation and significance of the logarithm of a "
+        "ratio of frequencies. Annals of Human Genetics, 20, 309-311.",
+        "Half an event added to each cell of a 2×2 table with an empty one.",
+    ),
+    Source(
+        "Rosenthal & Rubin 2003",
+        "Rosenthal, R., & Rubin, D. B. (2003). r(equivalent): A simple effect size indicator."
+        " Psychological Methods, 8, 492-496.",
+        "Effect sizes from p and n alone.",
+    ),
+    Source(
+        "Chandrupatla 1997",
+        "Chandrupatla, T. R. (1997). A new hybrid quadratic/bisection algorithm for finding "
+        "the zero of a nonlinear function without using derivatives. Advances in Engineering "
+        "Software, 28, 145-149.",
+        "Roots behind exact intervals.",
+    ),
 )
