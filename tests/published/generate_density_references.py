@@ -2,7 +2,7 @@
 
     python tests/published/generate_density_references.py
 
-writes density_references.csv beside this file (a few minutes). Nothing of netsize is used.
+writes density_references.csv beside this file (about ten minutes). Nothing of netsize is used.
 
 t     T = (Z + δ)/S with S² chi-square on ν over ν: densities and tails as integrals over S.
 chi2  Poisson mixture of central chi-squares: λ/2 sets the mean of the extra pairs of df.
@@ -295,8 +295,16 @@ def limits():
             lambda d, t=t, nu=nu, p=p: t_lower(t, nu, d) - p, (t - 1, t + 1), tol=1e-50
         )
         yield "t", f"limit {p}", t, nu, "", "", root
-    for f, nu1, nu2, p in ((5, 2, 57, 0.95), (5, 2, 57, 0.05), (0.05, 3, 40, 0.025), (1.2, 3, 40, 0.95),
-                           (11.221, 4, 50, 0.95), (30, 1, 3, 0.025), (2, 20, 1000, 0.995)):  # fmt: skip
+    f_cases = (
+        (5, 2, 57, 0.95),
+        (5, 2, 57, 0.05),
+        (0.05, 3, 40, 0.025),
+        (1.2, 3, 40, 0.95),
+        (11.221, 4, 50, 0.95),
+        (30, 1, 3, 0.025),
+        (2, 20, 1000, 0.995),
+    )
+    for f, nu1, nu2, p in f_cases:
         yield (
             "f",
             f"limit {p}",
