@@ -157,7 +157,9 @@ def spelled(choices: dict[str, Any]) -> list[str]:
     """Choices as the words of a command line, for the record."""
     words: list[str] = []
     for name, value in choices.items():
-        own = [n for n in _OPTIONS[name].__metadata__[0].param_decls or () if n.startswith("--")]
+        info = _OPTIONS[name].__metadata__[0]
+        # the first name stands in the place of a default that an annotation does not have
+        own = [n for n in (info.default, *(info.param_decls or ())) if isinstance(n, str)]
         option = own[0] if own else f"--{name.replace('_', '-')}"
         if value is True:
             words.append(option)

@@ -7,7 +7,7 @@ import re
 from html import escape
 from typing import TYPE_CHECKING, Any
 
-from netsize.presentation.figures.canvas import quiet_glyphs
+from netsize.presentation.figures.canvas import clean, quiet_glyphs
 
 if TYPE_CHECKING:
     from matplotlib.figure import Figure
@@ -55,7 +55,7 @@ def inline_svg(figure: Figure, *, name: str, title: str, description: str) -> st
         f'role="img" aria-labelledby="{name}-title {name}-desc" viewBox="0 0 {width} {height}" '
         f'width="{width}pt" height="{height}pt" stroke-linejoin="round" stroke-linecap="butt">'
     )
-    title, description = escape(title), escape(description)
+    title, description = escape(clean(title)), escape(clean(description))
     spoken = f'<title id="{name}-title">{title}</title><desc id="{name}-desc">{description}</desc>'
     return opening + spoken + body.strip()
 

@@ -116,7 +116,7 @@ def table_html(table: Table) -> str:
 
 def _long(table: Table) -> bool:
     """Whether it may break over pages; small ones stay whole and stand side by side."""
-    return len(table.rows) > 16 or len(table.columns) > 7
+    return len(table.rows) > 16 or len(table.columns) > 6
 
 
 def _side(right: bool) -> str:

@@ -36,8 +36,8 @@ nav ol { margin: .8rem 0 0; padding: 0; list-style: none; font-size: .85rem; dis
 .facts b { display: block; font-size: 1.45rem; line-height: 1.25;
   font-variant-numeric: tabular-nums; }
 .facts span { font-size: .78rem; color: var(--soft); }
-.table, figure { display: inline-block; vertical-align: top; max-width: 100%;
-  margin: .9rem 1.6rem .5rem 0; }
+.table, figure { display: inline-block; vertical-align: top; margin: .9rem 1.6rem .5rem 0;
+  max-width: calc(100% - 1.6rem); }
 .table.long { display: block; }
 .scroll { overflow-x: auto; }
 .table .under { width: 0; min-width: 100%; }
@@ -62,9 +62,12 @@ blockquote { margin: .3rem 0; padding: .1rem 0 .1rem .9rem; border-left: 3px sol
 figure { width: 28rem; break-inside: avoid; }
 figure svg { display: block; width: 100%; height: auto; }
 figcaption { font-size: .8rem; color: var(--soft); margin-top: .3rem; }
+@media (max-width: 40rem) {
+  .table, figure { margin-right: 0; max-width: 100%; }
+}
 @media print {
   @page { size: A4; margin: 13mm; }
-  body { max-width: none; padding: 0; font-size: 9pt; line-height: 1.35; }
+  body { max-width: none; padding: 0; font-size: 8.6pt; line-height: 1.3; }
   nav, .skip { display: none; }
   h1 { font-size: 14pt; } h2 { font-size: 11pt; margin: 12pt 0 4pt; break-after: avoid; }
   h3 { font-size: 9pt; margin: 6pt 0 2pt; break-after: avoid; }
@@ -76,9 +79,10 @@ figcaption { font-size: .8rem; color: var(--soft); margin-top: .3rem; }
   thead { display: table-header-group; }
   thead th.n { min-width: 0; max-width: 15mm; } tbody th { min-width: 0; max-width: 62mm; }
   tr { break-inside: avoid; } .scroll { overflow: visible; }
-  .table, figure { margin: 4pt 4mm 2pt 0; } figure { width: 80mm; }
+  .table, figure { margin: 4pt 4mm 2pt 0; max-width: calc(100% - 4mm); } figure { width: 80mm; }
   .under, figcaption, .about { font-size: 7.2pt; } ul { font-size: 8pt; }
-  #methods ul { font-size: 6.6pt; columns: 3; column-gap: 5mm; } #evidence ul { font-size: 7.2pt;
+  #methods ul { font-size: 6.6pt; columns: 3; column-gap: 5mm;
+    line-height: 1.2; } #evidence ul { font-size: 7.2pt;
     columns: 2; column-gap: 6mm; }
   a { color: inherit; text-decoration: none; }
 }
