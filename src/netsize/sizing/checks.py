@@ -55,9 +55,8 @@ def between(
 
 def whole(name: str, values: ArrayLike, low: int, high: int = 10**9) -> Array:
     """Values as an array of whole numbers from low to high (kept as float64 for arithmetic)."""
-    array = between(
-        name, values, low, high, ends="[]", expected=f"a whole number of at least {low}"
-    )
+    wanted = f"a whole number from {low} to {high:,}"
+    array = between(name, values, low, high, ends="[]", expected=wanted)
     if not np.all(array == np.floor(array)):
         bad = float(array[array != np.floor(array)].flat[0])
         raise SettingError(option(name), f"{bad:g} is not a whole number")

@@ -162,7 +162,7 @@ def _equivalence_chance(tail: float, ncp: Array, parameters: Parameters) -> Arra
             - nu * s * s / 2
         )
         inside = ndtr((1 - relative) * ncp - c * s) - ndtr(c * s - (1 + relative) * ncp)
-        total = half * ((np.exp(log_density) * np.maximum(inside, 0.0)) @ _WEIGHTS)
+        total = half * ((np.exp(log_density) * inside) @ _WEIGHTS)
     return np.asarray(np.clip(total, 0.0, 1.0))
 
 

@@ -149,8 +149,8 @@ class Regression(Design):
     def metrics(self) -> tuple[EffectMetric, ...]:
         rest = 1 - self.other_r2
         metrics = [
-            EffectMetric("f2", "Cohen's f²", 0, 10_000),
-            EffectMetric("f", "Cohen's f", 0, 100, np.square, np.sqrt),
+            EffectMetric("f2", "Cohen's f²", 0, 400),
+            EffectMetric("f", "Cohen's f", 0, 20, np.square, np.sqrt),
             EffectMetric(
                 "r2",
                 "increment of R²",

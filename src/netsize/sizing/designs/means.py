@@ -14,8 +14,7 @@ from netsize.sizing.laws import WELCH, Law, Parameters, T
 
 __all__ = ["OneSample", "Paired", "TwoGroups", "share_to_f"]
 
-# beyond this every test with two participants a group is certain
-LARGEST_D = 100.0
+LARGEST_D = 20.0  # far beyond any real effect; larger ones are slips of a decimal point
 
 
 def share_to_f(share: Array) -> Array:

@@ -15,7 +15,7 @@ from netsize.sizing.laws import F, Law, Parameters
 
 __all__ = ["Anova", "Factorial", "RepeatedMeasures"]
 
-LARGEST_F = 100.0
+LARGEST_F = 20.0  # far beyond any real effect
 _PRINTED = "the value printed for a small study is too large on average; ω² is nearly unbiased"
 
 
