@@ -150,14 +150,16 @@ def _table(sizing: Sizing, found: Abilities | None) -> tuple[list[Column], list[
     if priced:
         columns.append(("cost", "right"))
     columns.append(("power", "right"))
-    reached = {"half-width": "half-width", "assurance": "assurance", "expected-power": "mean power"}
+    own = sizing.study.design.metrics[0].name
+    width = "half-width" if sizing.metric.name == own else f"half-width of {_SYMBOLS.get(own, own)}"
+    reached = {"half-width": width, "assurance": "assurance", "expected-power": "mean power"}
     if sizing.goal.kind in reached:
         columns.append((reached[sizing.goal.kind], "right"))
     if found is not None:
         columns += [
             ("sign error", "right"),
             ("exaggeration", "right"),
-            ("half-width", "right"),
+            (width, "right"),
             (f"least {_symbol(sizing)} at {percent(sizing.goal.target)}", "right"),
         ]
     rows = []
