@@ -74,6 +74,24 @@ def stretch(panels, kernel: str, bottom: float, top: float):
     return np.sinh(v), w * np.cosh(v)
 
 
+@pytest.mark.parametrize(
+    ("name", "law"),
+    [
+        ("t", lambda x, theta: stats.nct.logpdf(x, 38, theta * math.sqrt(10))),
+        ("paired", lambda x, theta: stats.nct.logpdf(x, 2, theta * math.sqrt(3))),
+        ("f", lambda x, theta: stats.ncf.logpdf(x, 2, 57, 60 * theta**2)),
+        ("chi2", lambda x, theta: stats.ncx2.logpdf(x, 2, 60 * theta**2)),
+        ("z", lambda x, theta: stats.norm.logpdf(x, theta * math.sqrt(15))),
+    ],
+)
+def test_likelihood_is_the_law_at_the_effect(name, law):
+    settings = {"metric": "mean-difference"} if name == "z" else {}
+    (row,) = effects([RESULTS[name]], **settings).rows
+    theta = np.array([0.05, 0.3, 0.8])
+    ours = curves.log_likelihood([row.evidence], theta)[0]
+    assert ours == pytest.approx(law(row.evidence.low, theta), rel=1e-8)
+
+
 def test_interval_likelihood_is_the_probability_of_the_interval():
     result = ReportedResult(label="a", family="t", df=(38,), p=Printed(0.05, ">"))
     (row,) = effects([result]).rows

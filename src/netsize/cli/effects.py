@@ -25,7 +25,7 @@ def effects(
     ] = None,
     level: Annotated[float, typer.Option(help="Confidence level of the exact intervals.")] = 0.95,
     variance: Annotated[
-        str, typer.Option(help="Variances: unbiased, or the textbooks' large-sample.")
+        str, typer.Option(help="Variance of mean differences: unbiased or large-sample.")
     ] = "unbiased",
     correlation: Annotated[
         float | None,

@@ -35,7 +35,8 @@ def effects(
     metric : scale to pool on, a name of `METRICS`; None lets the results decide where they all
         suit the same one.
     level : confidence level of the exact intervals.
-    variance : "unbiased" (Hedges 1983; exact moments of F) or "large-sample".
+    variance : of mean differences, "unbiased" (Hedges 1983) or "large-sample"; the variances of
+        the other metrics have one form each.
     correlation : within-pair correlation of paired results that carry none of their own.
     alpha : two-sided significance level that parts the p-bands.
     cut_points : several such levels, increasing, in the place of `alpha`.

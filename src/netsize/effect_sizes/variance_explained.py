@@ -8,28 +8,10 @@ from netsize.effect_sizes import estimators
 from netsize.effect_sizes.observed import Observed
 from netsize.effect_sizes.records import EffectSize, Evidence
 from netsize.effect_sizes.settings import Settings
+from netsize.effect_sizes.signed_roots import signed_root, variance_from_f
 from netsize.reported.records import ReportedResult, StudyDesign
 
-__all__ = ["f_effect", "signed_root", "signed_root_variance"]
-
-
-def signed_root(square: float) -> float:
-    """The root of an estimate of f², with the sign of the estimate.
-
-    Unbiased estimates of f² are negative where F is small; cutting them at 0 before pooling would
-    bias a mean upward (Okada 2017), so they enter f as a negative root.
-    """
-    return math.copysign(math.sqrt(abs(square)), square)
-
-
-def signed_root_variance(square: float, variance: float) -> float:
-    """Approximate variance of `signed_root` of an estimate of f² ≥ 0 with the given variance.
-
-    v/√(16 f⁴ + πv/2). For large f² this is the delta method, v/(4f²). At f = 0, where that
-    diverges, it is E|x| = √(2v/π) of a normal x with variance v, the exact variance of its signed
-    root. In between it interpolates (our own formula).
-    """
-    return variance / math.sqrt(16 * max(square, 0.0) ** 2 + math.pi * variance / 2)
+__all__ = ["f_effect"]
 
 
 def f_effect(
@@ -55,7 +37,7 @@ def f_effect(
     printed = estimate = variance = null_variance = None
     found = list(others)
     if df2 > 4:
-        null_variance = _variance(0.0, df1, df2, scale, settings)
+        null_variance = variance_from_f(0.0, df1=df1, df2=df2, scale=scale)
     if observed.exact:
         f = observed.low
         printed = math.sqrt(df1 * f / df2) * math.sqrt(n) / scale
@@ -68,7 +50,9 @@ def f_effect(
             square = float(estimators.unbiased_noncentrality(f, df1, df2)) / scale**2
             found.append(("f2", square))
         if df2 > 4:
-            estimate, variance = signed_root(square), _variance(square, df1, df2, scale, settings)
+            estimate = signed_root(square)
+            ncp = max(square, 0.0) * scale**2
+            variance = variance_from_f(ncp, df1=df1, df2=df2, scale=scale)
             if square < 0:
                 notes.append("F below its mean under no effect: f² negative, kept as it is")
         else:
@@ -99,12 +83,3 @@ def f_effect(
         others=tuple(found),
         assumptions=tuple(notes),
     )
-
-
-def _variance(square: float, df1: float, df2: float, scale: float, settings: Settings) -> float:
-    ncp = max(square, 0.0) * scale**2
-    if settings.variance == "large-sample":
-        of_ncp = 2 * (df1 + 2 * ncp) + 2 * (df1 + ncp) ** 2 / df2
-    else:
-        of_ncp = float(estimators.unbiased_noncentrality_variance(ncp, df1, df2))
-    return signed_root_variance(square, of_ncp / scale**4)

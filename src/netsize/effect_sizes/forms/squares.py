@@ -9,7 +9,8 @@ from netsize.effect_sizes.forms.base import refuse
 from netsize.effect_sizes.observed import Observed
 from netsize.effect_sizes.records import EffectSize, Evidence
 from netsize.effect_sizes.settings import Settings
-from netsize.effect_sizes.variance_explained import f_effect, signed_root, signed_root_variance
+from netsize.effect_sizes.signed_roots import signed_root, variance_from_chi2
+from netsize.effect_sizes.variance_explained import f_effect
 from netsize.reported.records import ReportedResult
 
 __all__ = ["ChiSquareForm", "FisherForm"]
@@ -115,5 +116,5 @@ class ChiSquareForm:
         )
 
     def _variance(self, square: float) -> float:
-        of_ncp = 2 * (self.df + 2 * max(square, 0.0) * self.n)  # variance of chi-square at λ
-        return signed_root_variance(square, of_ncp / self.n**2)
+        ncp = max(square, 0.0) * self.n
+        return variance_from_chi2(ncp, df=self.df, scale=math.sqrt(self.n))
