@@ -8,7 +8,7 @@ SCRIPT = Path(__file__).parents[1] / "examples" / "regenerate.py"
 
 
 def test_examples_are_up_to_date():
-    """If this fails after a wanted change: python examples/regenerate.py, and look at the result."""
+    """After a wanted change: python examples/regenerate.py, and look at what it made."""
     run = subprocess.run(
         [sys.executable, str(SCRIPT), "--compare"],
         capture_output=True,
