@@ -7,7 +7,12 @@ from collections.abc import Callable, Sequence
 
 import numpy as np
 import pytest
+from hypothesis import settings
 from numpy.typing import NDArray
+
+# the same examples in every run, and no clock: machines differ
+settings.register_profile("netsize", deadline=None, derandomize=True)
+settings.load_profile("netsize")
 
 Rule = tuple[NDArray[np.float64], NDArray[np.float64]]
 

@@ -124,3 +124,23 @@ def test_settings_outside_their_range_are_named(result, settings, named):
     with pytest.raises(SettingError) as caught:
         effects([result("t", 2.0, df=(38,))], **settings)
     assert caught.value.setting == named
+
+
+@pytest.mark.parametrize(
+    ("family", "value", "df", "p", "band"),
+    [
+        ("t", 2.02, (38,), Printed(0.05, "<"), 0),  # critical 2.0244
+        ("t", 2.02, (38,), None, 1),
+        ("t", 2.02, (38,), Printed(0.05, "="), 1),  # leaves it open
+        ("t", 2.02, (38,), Printed(0.049, "="), 0),
+        ("t", 2.03, (38,), Printed(0.05, ">"), 0),  # 2.025 is above the critical value
+        ("t", 1.9, (38,), Printed(0.05, "<"), 1),  # beyond rounding: the statistic stands
+        ("f", 4.10, (1, 38), Printed(0.05, "<"), 0),  # critical 4.0982
+        ("f", 4.09, (1, 38), Printed(0.05, "<"), 1),  # at most 4.095
+        ("r", 0.31, (38,), Printed(0.05, "<"), 0),  # critical .3120
+        ("f", 3.16, (2, 57), Printed(0.05, ">"), 1),  # critical 3.1588
+    ],
+)
+def test_printed_p_decides_where_rounding_leaves_two_bands(row, family, value, df, p, band):
+    r = row(family, value, df=df, decimals=2, p=p)
+    assert r.evidence.band == band

@@ -9,6 +9,7 @@ from dataclasses import dataclass, replace
 
 from scipy.special import betaincinv, chdtrc, chdtri, fdtrc, ndtr, ndtri, stdtr, stdtrit
 
+from netsize.effect_sizes.rounding import band_from_printed_p
 from netsize.effect_sizes.settings import Settings
 from netsize.errors import EvidenceError
 from netsize.reported.records import ReportedResult
@@ -74,6 +75,7 @@ class Observed:
     two_sided : True where low < |X| < high is known.
     cuts : thresholds of the p-bands, decreasing. p : two-sided p of an exact value, else None.
     assumptions : what reading it took for granted.
+    named_band : the band that a printed p names where the rounded value leaves two.
     """
 
     low: float
@@ -82,6 +84,7 @@ class Observed:
     cuts: tuple[float, ...]
     p: float | None
     assumptions: tuple[str, ...]
+    named_band: int | None = None
 
     @property
     def exact(self) -> bool:
@@ -109,6 +112,8 @@ class Observed:
     @property
     def band(self) -> int | None:
         """The p-band that holds all of it, None where it straddles a cut."""
+        if self.named_band is not None:
+            return self.named_band
         edges = (math.inf, *self.cuts, -math.inf)
         low = -self.high if self.two_sided else self.low
         for j, (top, bottom) in enumerate(itertools.pairwise(edges)):
@@ -126,7 +131,8 @@ def observe(
 
     An inequality and "n.s." become intervals; a p-value alone is turned back into the statistic.
     """
-    cuts = tuple(law.critical(c, tails=result.tails) for c in settings.cuts_of(result))
+    levels = settings.cuts_of(result)
+    cuts = tuple(law.critical(c, tails=result.tails) for c in levels)
     notes: list[str] = []
     sign = _sign(result, value) if law.signed else 1
     p = result.p
@@ -148,8 +154,13 @@ def observe(
         notes.append("one-tailed test: significant where its one-tailed p is below the cut")
     if sign < 0 and not two_sided:
         low, high = -high, -low
-    exact = low == high
-    return Observed(low, high, two_sided, cuts, law.p_value(low) if exact else None, tuple(notes))
+    if low < high:
+        return Observed(low, high, two_sided, cuts, None, tuple(notes))
+    seen = Observed(low, high, False, cuts, law.p_value(low), ())
+    named = band_from_printed_p(result, low, levels, cuts) if low > 0 else None
+    if named is not None and named != seen.band:
+        notes.append("rounded at the edge of significance: the printed p decides its p-band")
+    return replace(seen, assumptions=tuple(notes), named_band=named)
 
 
 def _from_p(result: ReportedResult, law: NullLaw, notes: list[str]) -> tuple[float, float, bool]:
