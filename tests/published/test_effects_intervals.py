@@ -80,6 +80,7 @@ def test_ends_of_the_t_interval_against_scipy(m, t):
 def test_interval_of_f_too_small_for_any_effect_is_a_point():
     row = only_row(ReportedResult(label="a", family="f", value=0.02, df=(3, 40)))
     assert (row.low, row.high) == (0.0, 0.0)
+    assert any("the interval is the point 0" in a for a in row.assumptions)
     assert stats.f.cdf(0.02, 3, 40) < 0.025
 
 

@@ -109,10 +109,18 @@ def _finished(rows: list[EffectSize], level: float) -> tuple[EffectSize, ...]:
             low=float(a),
             high=float(b),
             # what the reader took as meant comes first; nothing is said twice
-            assumptions=tuple(dict.fromkeys((*row.result.notes, *row.assumptions))),
+            assumptions=tuple(
+                dict.fromkeys((*row.result.notes, *row.assumptions, *_boundary(row, float(b))))
+            ),
         )
         for row, a, b in zip(rows, low, high, strict=True)
     )
+
+
+def _boundary(row: EffectSize, high: float) -> tuple[str, ...]:
+    if row.metric.signed or high > 0:
+        return ()
+    return ("statistic too small for any effect at this level: the interval is the point 0",)
 
 
 def _nothing(left_out: list[LeftOut]) -> str:
