@@ -211,13 +211,22 @@ def test_figures_and_tables_agree(document):
         for word in NUMBER.findall(text_of(column.kind, cell).replace("[", " ").replace("]", " "))
     }
     assert found
-    for section in document.sections:
-        for block in section.blocks:
-            if isinstance(block, Picture) and block.key in ("evidence", "planning-distribution"):
-                for text in draw(block.shown).axes[0].texts:
-                    words = re.sub(r"P\(.*", "", text.get_text()).replace("[", " ")
-                    for number in re.findall(r"(?<=\s)-?\d+\.\d+", words.replace("]", " ")):
-                        assert number in cells, (block.key, text.get_text())
+    pictures = {
+        block.key: block
+        for section in document.sections
+        for block in section.blocks
+        if isinstance(block, Picture)
+    }
+    # effects in two figures, participants in the third
+    for key, pattern in (
+        ("evidence", r"(?<=\s)-?\d+\.\d+"),
+        ("planning-distribution", r"(?<=\s)-?\d+\.\d+"),
+        ("sizes", r"(?<=\s)[\d,]+$"),
+    ):
+        for text in draw(pictures[key].shown).axes[0].texts:
+            words = re.sub(r"P\(.*", "", text.get_text()).replace("[", " ").replace("]", " ")
+            for number in re.findall(pattern, words.rstrip()):
+                assert number in cells, (key, text.get_text())
 
 
 def test_json_makes_the_same_page_without_computing(document, tmp_path, monkeypatch):

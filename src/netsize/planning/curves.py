@@ -53,10 +53,14 @@ class Density:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class SizeOverEffect:
-    """Participants in total over the effect; `power` is that of the goal, None for precision."""
+    """Participants in total over the effect; `power` is that of the goal, None for precision.
+
+    rows : the same for each row of the plan's table; for a budget, what `power` would need.
+    """
 
     effects: tuple[float, ...]
     n_total: tuple[int, ...]
+    rows: tuple[int | None, ...]
     power: float | None
 
 
@@ -124,6 +128,8 @@ def size_over_effect(plan: Plan) -> SizeOverEffect:
     if plan.metric.name == "fisher-z":
         effect = effect[effect < 0.999]
     sized = size_for(plan.study, settings, effect_on(plan.study, plan.metric, effect))
+    limits = np.array([np.nan if row.limit is None else row.limit for row in plan.rows])
+    rows = size_for(plan.study, settings, effect_on(plan.study, plan.metric, limits))
     kept = [
         (float(e), s.n_total)
         for e, s in zip(effect, sized, strict=True)
@@ -132,6 +138,7 @@ def size_over_effect(plan: Plan) -> SizeOverEffect:
     return SizeOverEffect(
         effects=tuple(e for e, _ in kept),
         n_total=tuple(n for _, n in kept),
+        rows=tuple(s.n_total for s in rows),
         power=None if settings.goal == "precision" else settings.power,
     )
 

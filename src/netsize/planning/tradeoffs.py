@@ -120,17 +120,17 @@ def affordable(plan: Plan) -> tuple[Affordable, ...]:
     """What the planned size can do, beside half and double of it and earlier habits."""
     study, answer, settings = plan.study, plan.answer, plan.settings
     naive = plan.row("as-printed").sized.units
-    base, what = answer.sized.units, "as planned"
+    base, what = answer.sized.units, "planned n"
     if not answer.finite and answer.alternatives:
         smallest = min(answer.alternatives, key=lambda a: a.sized.units)
-        base, what = smallest.sized.units, smallest.what
+        base, what = smallest.sized.units, f"n at {smallest.what}"
     largest = units_within(study, max(row.n for row in plan.literature.rows))
     candidates = [
         ("as-printed n", 0 if settings.goal == "budget" else naive),
-        ("as the largest earlier study", largest),
-        (f"half of: {what}", base // 2),
+        ("n of the largest earlier study", largest),
+        (f"half the {what}", base // 2),
         (what, base),
-        (f"double of: {what}", 2 * base),
+        (f"twice the {what}", 2 * base),
     ]
     seen: dict[int, str] = {}
     for name, size in candidates:

@@ -73,11 +73,11 @@ def sizes_figure(plan: Plan) -> SizesFigure:
             Mark(
                 label=_SHORT.get(row.key, row.label),
                 effect=row.limit,
-                n_total=_on_curve(curve, row.limit) if budget else row.sized.n_total,
+                n_total=size,
                 naive=row.key in ("as-printed", "largest-printed", "pooled"),
                 chosen=row.key == "planning-value",
             )
-            for row in plan.rows
+            for row, size in zip(plan.rows, curve.rows, strict=True)
             if row.limit is not None or row.effect is not None
         ),
         fixed=plan.answer.sized.n_total if budget else None,
@@ -93,18 +93,11 @@ _SHORT = {
 }
 
 
-def _on_curve(curve: SizeOverEffect, effect: float | None) -> int | None:
-    """The curve's n at the nearest effect that it has; None outside it."""
-    if effect is None or not curve.effects or not curve.effects[0] <= effect <= curve.effects[-1]:
-        return None
-    return curve.n_total[int(np.argmin(np.abs(np.array(curve.effects) - effect)))]
-
-
 def draw_sizes(shown: SizesFigure, *, ax: Axes | None = None) -> Figure:
     """Draw the curve and its marks; names stand in a column at the right, lines lead to them."""
     placed = [m for m in shown.marks if m.n_total is not None and m.effect is not None]
     lost = [m for m in shown.marks if m.n_total is None or m.effect is None]
-    ax = canvas.axes(ax, height=max(66.0, 18.0 + 3.1 * len(shown.marks)), left=15.0, top=3.0)
+    ax = canvas.axes(ax, height=max(66.0, 21.0 + 3.1 * len(shown.marks)), left=15.0, top=3.0)
     curve = np.array([shown.curve.effects, shown.curve.n_total], dtype=float)
     sizes = [float(n) for n in shown.curve.n_total] + [float(m.n_total or 1) for m in placed]
     if shown.fixed is not None:
@@ -127,11 +120,9 @@ def draw_sizes(shown: SizesFigure, *, ax: Axes | None = None) -> Figure:
         ax.plot(
             [place.low, place.high], [level] * 2, color=INK, linewidth=0.8, linestyle=(0, (3, 2))
         )
-        text = f"budget: {fmt.count(shown.fixed)}"
-        canvas.write(ax, place.high, level + 0.01, text, va="bottom", ha="right")
     for mark in placed:
         _marker(ax, mark)
-    _name_marks(ax, placed, lost, place, bottom, top)
+    _name_marks(ax, placed, lost, place, bottom, top, shown.fixed)
     at = canvas.steps(min(effects), max(effects), 5)
     canvas.ticks(ax, at, [fmt.tick(x) for x in at])
     where = log_ticks(bottom, top)
@@ -168,13 +159,18 @@ def _name_marks(
     place: canvas.Frame,
     bottom: float,
     top: float,
+    fixed: int | None,
 ) -> None:
     height = ax.bbox.height / canvas.root(ax).dpi * 25.4
     line = 3.1 * (top - bottom) / height
+    named = [*lost, *placed]
     # those without a size stand on top, where the curve runs off
     heights = [top] * len(lost) + [float(np.log10(m.n_total or 1)) for m in placed]
+    if fixed is not None:
+        named.append(Mark(label="budget", effect=place.high, n_total=fixed, chosen=True))
+        heights.append(float(np.log10(fixed)))
     where = canvas.spread(heights, line, bottom + line / 2, top - line / 2)
-    for mark, y in zip((*lost, *placed), where, strict=True):
+    for mark, y in zip(named, where, strict=True):
         start = place.high + _LEAD * place.unit
         room = (place.end - start) / place.unit - canvas.width(_text(mark, ""), bold=True) - 0.5
         canvas.write(

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from netsize.planning.curves import size_over_effect
 from netsize.planning.plan import Plan
 from netsize.planning.rows import Row
 from netsize.presentation import format as fmt
@@ -42,8 +43,12 @@ def central_table(plan: Plan) -> Table:
     ]
     if plan.settings.goal != "power":
         columns.append(Column(title="power of this n", kind="probability"))
-    if not budget:
-        columns.append(Column(title="power of the as-printed n", kind="probability"))
+    needed = size_over_effect(plan).rows if budget else (None,) * len(plan.rows)
+    columns.append(
+        Column(title=f"n for {fmt.percent(plan.settings.power)} power", kind="count")
+        if budget
+        else Column(title="power of the as-printed n", kind="probability")
+    )
     notes = []
     if plan.settings.goal == "assurance":
         notes.append(
@@ -56,13 +61,13 @@ def central_table(plan: Plan) -> Table:
         key="readings",
         caption="Every reading of the evidence with the size it leads to",
         columns=tuple(columns),
-        rows=tuple(_reading(plan, row) for row in plan.rows),
+        rows=tuple(_reading(plan, row, n) for row, n in zip(plan.rows, needed, strict=True)),
         strong=tuple(i for i, row in enumerate(plan.rows) if row.key == "planning-value"),
         notes=tuple(notes),
     )
 
 
-def _reading(plan: Plan, row: Row) -> tuple[Cell, ...]:
+def _reading(plan: Plan, row: Row, needed: int | None) -> tuple[Cell, ...]:
     cells: list[Cell] = [
         row.label + (f" ({row.note})" if row.note else ""),
         row.effect,
@@ -72,8 +77,7 @@ def _reading(plan: Plan, row: Row) -> tuple[Cell, ...]:
     ]
     if plan.settings.goal != "power":
         cells.append(row.power)
-    if plan.settings.goal != "budget":
-        cells.append(row.power_of_naive_n)
+    cells.append(needed if plan.settings.goal == "budget" else row.power_of_naive_n)
     return tuple(cells)
 
 
@@ -141,8 +145,8 @@ def _goal(plan: Plan) -> str:
         "power": f"The goal is {fmt.percent(s.power)} power at the planning value.",
         "assurance": f"The goal is {fmt.percent(s.power)} power at each reading's lower limit.",
         "precision": f"The goal is an interval with a half-width of {fmt.effect(s.half_width)}.",
-        "budget": f"The goal is to use at most {fmt.tick(s.at_most or 0)} "
-        + ("of money." if s.cost_per is not None else "participants."),
+        "budget": f"The goal is to spend at most {fmt.tick(s.at_most or 0)} "
+        + ("in money." if s.cost_per is not None else "participants."),
     }[s.goal]
     return f"{words} New study: {plan.study.design.title}."
 
@@ -223,7 +227,7 @@ def _affordable(material: Material) -> Table:
             )
             for a in rows
         ),
-        strong=tuple(i for i, a in enumerate(rows) if a.what == "as planned"),
+        strong=tuple(i for i, a in enumerate(rows) if a.what == "planned n"),
         notes=(
             "Overall chance: of a significant result as predicted over the whole planning "
             f"distribution, negligible effects included. Detectable: found with "
