@@ -172,6 +172,13 @@ def test_precision_is_reached_and_minimal(
     assert (before > width).all()
 
 
+def test_one_error_df_has_no_mean_half_width() -> None:
+    widths = expected_half_width(make_study("paired"), np.array([2.0, 3.0, 30.0]), 0.5, 0.95)
+    assert np.isinf(widths[0])
+    assert 1 < widths[1] < 10
+    assert widths[2] < 0.5
+
+
 @pytest.mark.parametrize(("design", "effect"), [("two-groups", 0.6), ("correlation", 0.4)])
 def test_assured_precision_by_simulation(design: str, effect: float) -> None:
     """The half-width kept with probability .9, against its simulated distribution."""

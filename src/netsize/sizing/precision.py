@@ -102,8 +102,8 @@ def _quantile(
 
 
 def _reach(ncp: Array, df: Array) -> Array:
-    """A distance from ncp beyond which noncentral t has less than 1e-6 on either side."""
-    return np.asarray(10 * (1 + np.abs(ncp) / np.sqrt(df)) * 10 ** (6 / df))
+    """A distance from ncp beyond which noncentral t, df ≥ 2, has less than 1e-6 on either side."""
+    return np.asarray(10 * (1 + np.abs(ncp) / np.sqrt(df)) * 10 ** np.minimum(6 / df, 3))
 
 
 def _estimates(study: Study, units: Array, effect: Array, score: Array) -> Array:
@@ -135,10 +135,22 @@ def _estimates(study: Study, units: Array, effect: Array, score: Array) -> Array
 
 
 def expected_half_width(study: Study, units: ArrayLike, effect: ArrayLike, level: float) -> Array:
-    """Mean half-width over the estimates that a study of this effect may give; broadcast."""
+    """Mean half-width over the estimates that a study of this effect may give; broadcast.
+
+    Infinite with one error degree of freedom, where noncentral t has no mean.
+    """
     units, effect = broadcast(units, effect)
     if study.design.law is NORMAL:
         return observed_half_width(study, units, effect, level)
+    if study.design.law is T:
+        mean = study.terms(units, effect)[1][-1] > 1
+        widths = np.full(units.shape, np.inf)
+        widths[mean] = _averaged(study, units[mean], effect[mean], level)
+        return widths
+    return _averaged(study, units, effect, level)
+
+
+def _averaged(study: Study, units: Array, effect: Array, level: float) -> Array:
     nodes, weights = _KINKED if study.design.law is F else _SMOOTH
     units, effect, score = broadcast(units[..., None], effect[..., None], nodes)
     estimates = _estimates(study, units, effect, score)
