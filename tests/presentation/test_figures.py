@@ -86,6 +86,18 @@ def test_labels_that_are_cut_stand_in_the_description(hostile_plan):
     assert "x" * 5000 in shown.description
 
 
+@pytest.mark.parametrize("name", ["sixty", "finite"])
+def test_study_labels_end_before_the_data(plans, name):
+    figure = draw(plans(name), "evidence")
+    ax = figure.axes[0]
+    low, _ = ax.spines["bottom"].get_bounds()
+    edge = ax.transData.transform((low, 0))[0]
+    labels = {x.label for x in plans(name).literature.rows}
+    found = [(t, box) for t, box in words(figure) if any(x.startswith(t[:9]) for x in labels)]
+    assert len(found) == len(labels)
+    assert all(box.x1 <= edge for _, box in found)
+
+
 @pytest.mark.parametrize("name", FIGURES)
 @pytest.mark.parametrize("form", FORMATS)
 def test_the_same_numbers_give_the_same_bytes(plans, name, form):

@@ -51,6 +51,7 @@ BLUE, ORANGE = "#0072B2", "#B84E00"
 INK, GREY, PALE = "#1A1A1A", "#5F5F5F", "#C5DCEA"
 _MM = 1 / 25.4
 _POINT = 25.4 / 72
+_ALLOWANCE = 1.07  # screens round the widths of letters, and other fonts may stand in
 _ELLIPSIS = "…"
 
 
@@ -179,7 +180,7 @@ def width(text: str, size: float = SIZE, *, bold: bool = False) -> float:
         points, _, _ = text_to_path.get_text_width_height_descent(
             text, FontProperties(family=FONT, size=size, weight=weight), ismath=False
         )
-    return float(points) * _POINT + 0.5 * wide * size * _POINT
+    return float(points) * _POINT * _ALLOWANCE + 0.5 * wide * size * _POINT
 
 
 def shorten(text: str, most: float, size: float = SIZE) -> str:

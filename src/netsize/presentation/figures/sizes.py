@@ -20,7 +20,7 @@ if TYPE_CHECKING:
 
 __all__ = ["Mark", "SizesFigure", "draw_sizes", "sizes_figure"]
 
-_NAMES = (30.0, 44.0)  # millimetres for the names at the right, at least and at most
+_NAMES = (30.0, 47.0)  # millimetres for the names at the right, at least and at most
 _LEAD = 5.0  # for the lines that lead to them
 
 

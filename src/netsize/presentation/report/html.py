@@ -108,7 +108,8 @@ def table_html(table: Table) -> str:
     return (
         f'<div class="table{" long" if _long(table) else ""}">'
         f'<div class="scroll" role="region" aria-labelledby="{key}-caption" tabindex="0">'
-        f'<table id="{key}-table"><caption id="{key}-caption">{html_text(table.caption)}</caption>'
+        f'<table id="{key}-table"><caption id="{key}-caption">'
+        f"<span>{html_text(table.caption)}</span></caption>"
         f"<thead><tr>{head}</tr></thead><tbody>{''.join(rows)}</tbody></table></div>"
         f"{notes}</div>\n"
     )

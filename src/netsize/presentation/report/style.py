@@ -64,6 +64,7 @@ figure svg { display: block; width: 100%; height: auto; }
 figcaption { font-size: .8rem; color: var(--soft); margin-top: .3rem; }
 @media (max-width: 40rem) {
   .table, figure { margin-right: 0; max-width: 100%; }
+  caption span { display: inline-block; max-width: calc(100vw - 3.5rem); }
 }
 @media print {
   @page { size: A4; margin: 13mm; }
