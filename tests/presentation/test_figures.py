@@ -158,7 +158,7 @@ def test_numbers_beside_the_marks_are_those_of_the_plan(plans):
 
 def test_no_finite_size_is_said_in_words(plans):
     texts = " ".join(text for text, _ in words(draw(plans("no-finite-size"), "sizes")))
-    assert "planning value (no finite n)" in texts
+    assert "planning value: none" in texts
 
 
 def test_text_colours_have_the_contrast_of_small_print():

@@ -20,7 +20,7 @@ if TYPE_CHECKING:
 
 __all__ = ["Mark", "SizesFigure", "draw_sizes", "sizes_figure"]
 
-_NAMES = (30.0, 47.0)  # millimetres for the names at the right, at least and at most
+_NAMES = (30.0, 41.0)  # millimetres for the names at the right, at least and at most
 _LEAD = 5.0  # for the lines that lead to them
 
 
@@ -132,7 +132,7 @@ def draw_sizes(shown: SizesFigure, *, ax: Axes | None = None) -> Figure:
 
 
 def _text(mark: Mark, label: str) -> str:
-    return f"{label} {fmt.count(mark.n_total) if mark.n_total is not None else '(no finite n)'}"
+    return f"{label} {fmt.count(mark.n_total)}" if mark.n_total is not None else f"{label}: none"
 
 
 def _colour(mark: Mark) -> str:
