@@ -21,9 +21,16 @@ def test_hundred_thousand_lines(benchmark, text):
     assert len(reading.results) == 100_000
 
 
-@pytest.mark.parametrize("unit", ["t(((((", "1234567890", "p = ", "12/40 vs "])
-def test_a_megabyte_of_junk(benchmark, unit):
-    text = unit * (1_000_000 // len(unit))
+@pytest.mark.parametrize("size", [250_000, 1_000_000])
+@pytest.mark.parametrize(
+    "unit",
+    ["t(((((", "1234567890", "t(38", "F(1,", "p = ", "[n ", "t ", "\n,", "12/40 vs ", "95% CI ",
+     '"a",', "χ²(", "a", "M = 5 ", "&lt;", "½", "r = .3 ± ", "a:", "|", ";\n", "#", "n = 20, ",
+     "t,df\n", "\u0301", "(", "12%", "1,", "{[("],
+)  # fmt: skip
+def test_junk_at_two_lengths(benchmark, unit, size):
+    """Four times the text should take four times as long; quadratic work takes sixteen."""
+    text = unit * (size // len(unit))
 
     def attempt():
         with contextlib.suppress(ReadingError):

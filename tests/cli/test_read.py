@@ -6,6 +6,8 @@ import csv
 import io
 import json
 import re
+import subprocess
+import sys
 
 import pytest
 
@@ -14,6 +16,7 @@ from netsize.cli.main import main
 from netsize.cli.read import read as command
 from netsize.cli.source import load, usable
 from netsize.errors import ReadingError
+from netsize.reported.unread import unread_place
 
 TEXT = (
     "Lab A: t(38) = 2.31, p = .026, d = 0.73\n"
@@ -147,3 +150,17 @@ def test_every_example_of_the_help_page_is_read():
     assert len(tags) > 10
     for tag in tags:
         assert not netsize.read(f"t(38) = 2.31 {tag}").unread, tag
+
+
+def test_help_loads_no_heavy_library():
+    program = (
+        "import sys; from netsize.cli.main import main; main(['--help']); "
+        "sys.exit(bool({'numpy', 'scipy', 'netsize.reported'} & set(sys.modules)))"
+    )
+    assert subprocess.run([sys.executable, "-c", program], capture_output=True).returncode == 0
+
+
+def test_the_faulty_part_is_marked_where_it_stands():
+    """Not at the first place of the line with the same characters."""
+    (place,) = netsize.read("Here r = .31, n = 50. But r = .31. Elsewhere r(48) = .2.").unread
+    assert "n = 50. But >>r = .31<<. Elsewhere" in unread_place(place)

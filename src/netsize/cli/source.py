@@ -4,12 +4,14 @@ from __future__ import annotations
 
 import os
 import sys
+from typing import TYPE_CHECKING
 
 import typer
 
 from netsize.errors import ReadingError
-from netsize.presentation.reading import unread_place
-from netsize.reported.records import Reading
+
+if TYPE_CHECKING:
+    from netsize.reported import Reading
 
 __all__ = ["load", "usable"]
 
@@ -32,24 +34,13 @@ def load(source: str | None) -> Reading:
 
 def usable(reading: Reading, *, skip_unread: bool) -> Reading:
     """`reading` itself, unless places in it could not be read and they are not to be skipped."""
-    if reading.unread and not skip_unread:
-        count = len(reading.unread)
-        what = "1 place looks" if count == 1 else f"{count} places look"
-        shown = reading.unread[:_MOST_LISTED]
-        rest = f"\n  and {count - len(shown)} more" if count > len(shown) else ""
-        raise ReadingError(
-            f"{what} like a statistic and cannot be used:\n"
-            + "\n".join("  " + unread_place(place).replace("\n", "\n      ") for place in shown)
-            + rest
-            + "\nMend the text, or leave these places out with --skip-unread.",
-            reading.unread,
-        )
+    from netsize.reported.unread import refuse_unread
+
+    if not skip_unread:
+        refuse_unread(reading)
     if not reading.results:
         raise ReadingError("no result could be read", reading.unread)
     return reading
-
-
-_MOST_LISTED = 20
 
 
 def _standard_input() -> str:

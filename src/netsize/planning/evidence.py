@@ -9,11 +9,12 @@ import numpy as np
 
 from netsize.effect_sizes import effects
 from netsize.effect_sizes.records import EffectSize, EffectTable
-from netsize.errors import EvidenceError, ReadingError
+from netsize.errors import EvidenceError
 from netsize.numerics.arrays import Array
 from netsize.planning.settings import PlanSettings
 from netsize.reported import read
 from netsize.reported.records import LeftOut, Reading, ReportedResult
+from netsize.reported.unread import refuse_unread
 from netsize.synthesis.random_effects import Pooled, pool
 from netsize.synthesis.results import from_table
 from netsize.synthesis.selection import dependence_weights
@@ -72,8 +73,8 @@ def table_of(
 ) -> tuple[EffectTable, tuple[LeftOut, ...]]:
     """Effect sizes on one metric, and everything that stays out with its reason."""
     reading = _reading(source)
-    if reading.unread and not skip_unread:
-        raise ReadingError(_unread_message(reading), reading.unread)
+    if not skip_unread:
+        refuse_unread(reading)
     left_out = tuple(
         LeftOut(label=f"line {u.line}", reason=f"{u.reason} ({u.text!r})") for u in reading.unread
     )
@@ -129,17 +130,3 @@ def _reading(source: str | Reading | Sequence[ReportedResult]) -> Reading:
     if isinstance(source, Reading):
         return source
     return Reading(results=tuple(source))
-
-
-def _places(number: int) -> str:
-    return "1 place looks" if number == 1 else f"{number} places look"
-
-
-def _unread_message(reading: Reading) -> str:
-    places = "\n".join(
-        f"  line {u.line}, column {u.column}: {u.text}\n    {u.reason}" for u in reading.unread
-    )
-    return (
-        f"{_places(len(reading.unread))} like statistics and cannot be used:\n{places}\n"
-        "Correct them, or leave them out with --skip-unread (skip_unread=True)."
-    )

@@ -11,9 +11,10 @@ from collections.abc import Sequence
 from netsize.presentation.format import MISSING
 from netsize.presentation.terminal import Column, show_list, show_table, show_text
 from netsize.reported.check import Finding
-from netsize.reported.records import Printed, Reading, ReportedResult, Unread
+from netsize.reported.records import Printed, Reading, ReportedResult
+from netsize.reported.unread import unread_place
 
-__all__ = ["show_reading", "statistic", "unread_place", "write_reading_csv"]
+__all__ = ["show_reading", "statistic", "write_reading_csv"]
 
 Findings = Sequence[tuple[Finding, ...]]
 
@@ -103,18 +104,6 @@ def statistic(result: ReportedResult) -> str:
         low, high = result.interval.low, result.interval.high
         text += f", {result.interval.level:.0%} interval {low:.3g} to {high:.3g}"
     return text
-
-
-def unread_place(place: Unread) -> str:
-    """Line and column, what stands there with the faulty part marked, and the reason."""
-    text = " ".join(place.text.split())
-    context = " ".join(place.context.split())
-    text = text if len(text) <= _LONGEST_MARK else text[: _LONGEST_MARK - 3] + "..."
-    marked = context.replace(text, f">>{text}<<", 1) if text and text in context else f">>{text}<<"
-    return f"line {place.line}, column {place.column}: {marked}\n{place.reason}"
-
-
-_LONGEST_MARK = 80
 
 
 def _in_words(row: Sequence[str]) -> str:

@@ -8,7 +8,7 @@ from bisect import bisect_right
 from netsize.reported.characters import Characters
 from netsize.reported.records import Span, Unread
 
-__all__ = ["Places"]
+__all__ = ["Places", "faulty_part_at"]
 
 _LINE_END = re.compile(r"\r\n|[\n\r\x85\u2028\u2029]")
 _AROUND = 60
@@ -50,3 +50,11 @@ class Places:
             reason=reason,
             context=f"{before}{self._text[context_start:context_end]}{after}",
         )
+
+
+def faulty_part_at(place: Unread) -> int:
+    """Where in the context of `place` its text starts; -1 where it does not stand there."""
+    for at in (place.column - 1, _AROUND + len("...")):
+        if place.context.startswith(place.text, at):
+            return at
+    return place.context.find(place.text)
