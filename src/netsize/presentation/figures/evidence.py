@@ -21,7 +21,7 @@ __all__ = ["EvidenceFigure", "Line", "draw_evidence", "evidence_figure"]
 
 _MOST_LABELLED = 60
 _PITCH = 3.5  # millimetres a labelled row
-_LABELS, _NUMBERS = 26.0, 27.0  # widest columns of words and of numbers
+_LABELS, _NUMBERS = 29.0, 27.0  # widest columns of words and of numbers
 _DENSE_HEIGHT = 110.0
 
 
