@@ -61,9 +61,10 @@ def observed_half_width(study: Study, units: ArrayLike, estimate: ArrayLike, lev
         # the estimate as the statistic shows it: F = 1 + λ/df₁ has mean λ at its expectation
         df1, df2 = parameters
         statistic = 1 + ncp * ncp / df1
-        low, high = (
-            np.sqrt(noncentral_f.noncentrality(statistic, df1, df2, p)) for p in (lower, upper)
-        )
+        with np.errstate(over="ignore"):  # tails of enormous λ, which are 0
+            low, high = (
+                np.sqrt(noncentral_f.noncentrality(statistic, df1, df2, p)) for p in (lower, upper)
+            )
     else:
         raise SettingError(
             "--half-width",

@@ -129,7 +129,7 @@ def units_of(
     """The units of a study given by participants in its smaller group, in all, or by its cost."""
     m = study.modifiers
     if n is not None:
-        given = whole("n", n, 1, LARGEST)
+        given = whole("n", n, 1, LARGEST // len(study.design.sizes(np.asarray(1.0))))
         if m.cluster_size > 1:
             units = given // np.ceil(m.cluster_size / (1 - m.loss) - 1e-9)
         else:

@@ -49,7 +49,7 @@ class Anova(Design):
     groups: int = 3
 
     def __post_init__(self) -> None:
-        whole("groups", self.groups, 2, 10_000)
+        whole("groups", self.groups, 2, 1000)
 
     @property
     def law(self) -> Law:
@@ -89,7 +89,7 @@ class Factorial(Design):
     cells: int = 4
 
     def __post_init__(self) -> None:
-        whole("cells", self.cells, 2, 10_000)
+        whole("cells", self.cells, 2, 1000)
         whole("df1", self.df1, 1)
         if self.df1 >= self.cells:
             raise SettingError(
@@ -148,8 +148,8 @@ class RepeatedMeasures(Design):
     tested: str = "within"
 
     def __post_init__(self) -> None:
-        whole("measurements", self.measurements, 2, 10_000)
-        whole("groups", self.groups, 1, 10_000)
+        whole("measurements", self.measurements, 2, 1000)
+        whole("groups", self.groups, 1, 1000)
         between("pair_correlation", self.pair_correlation, -1 / (self.measurements - 1), 1)
         lowest = 1 / (self.measurements - 1)
         between("sphericity", self.sphericity, lowest, 1, ends="[]")
