@@ -23,15 +23,35 @@ from scipy.interpolate import CubicSpline, PPoly
 from netsize.effect_sizes import curves
 from netsize.effect_sizes.metrics import Metric
 from netsize.effect_sizes.records import Evidence
-from netsize.numerics.arrays import Array, IntArray
+from netsize.numerics.arrays import Array, BoolArray, IntArray
 from netsize.synthesis.mixing import LOG_FLOOR, mix
+from netsize.synthesis.precise import (
+    bump,
+    centre,
+    is_precise,
+    mixed_bumps,
+    mixed_tails,
+    spread,
+    standard_error,
+    tail,
+)
 
-__all__ = ["Literature", "Priors", "dependence_weights", "effect_grid", "literatures", "surface"]
+__all__ = [
+    "Literature",
+    "Priors",
+    "combine",
+    "dependence_weights",
+    "literatures",
+    "mixed",
+    "own_likelihoods",
+    "range_of_means",
+    "surface",
+]
 
 # Exact curves are computed at every third grid point and splined between: the logarithms are so
 # smooth that at three quarters of a standard error this costs less than 1e-4.
 _THINNING = 3
-_MAX_POINTS = 40_000
+_MIN_POINTS, _MAX_POINTS = 60, 40_000
 # Probabilities below these are levelled: tails that far out are noise or zero in double precision,
 # and a spline through their jump would ring. ω ≥ 0.001 hides the first, the data the second.
 _BAND_FLOOR, _INTERVAL_FLOOR = -30.0, -60.0
@@ -70,9 +90,14 @@ class Literature:
     Attributes
     ----------
     theta : (G,) uniform grid of effects, fine enough for every curve. half_line : θ ≥ 0.
-    curves : one spline of m + U(J-1) logarithms over θ: first the likelihoods of the m pieces,
-        usually one a result, more where an inequality straddles p-bands; then log P_ij of all
-        bands but the last, design by design, for the U different designs.
+    mu_range : between which values μ is sought.
+    curves : one spline of logarithms over θ: the likelihoods of the ordinary pieces, then log P_ij
+        of all bands but the last, design by design, for the ordinary designs. A result is one
+        piece, or several where an inequality straddles p-bands.
+    bumps : (3, q) centre, width and log area of the precise pieces, whose likelihood is a normal
+        curve. tails : (2, J-1, v) edges and widths of the precise designs, for which
+        P(X > cut_j) = Φ((θ - edge)/width).
+    precise, precise_design : (m,) and (U,) which pieces and designs those are.
     owner, band : (m,) the result and the p-band of each piece.
     weights : (k,) dependence weights c_i.
     design : (k,) which of the U designs each result has.
@@ -81,7 +106,12 @@ class Literature:
 
     theta: Array
     half_line: bool
+    mu_range: tuple[float, float]
     curves: PPoly
+    bumps: Array
+    tails: Array
+    precise: BoolArray
+    precise_design: BoolArray
     owner: IntArray
     band: IntArray
     weights: Array
@@ -95,57 +125,81 @@ def dependence_weights(samples: Sequence[str], *, correlation: float) -> Array:
     return np.array([1.0 / (1.0 + (sizes[s] - 1) * correlation) for s in samples])
 
 
-def effect_grid(
-    evidence: Sequence[Evidence], priors: Priors, *, half_line: bool, fineness: float = 4.0
-) -> Array:
-    """A uniform grid of effects, `fineness` steps to the smallest standard error.
+def range_of_means(
+    evidence: Sequence[Evidence], *, half_line: bool, prior_scale: float | None
+) -> tuple[float, float]:
+    """Between which values μ is sought.
 
-    It spans four prior standard deviations of μ, or every estimate, and three of τ beyond, and has
-    at most 40,000 points, so for studies of millions it is coarser than asked.
+    Ten standard errors beyond every estimate, and four prior standard deviations. Without a prior,
+    twelve of the largest standard error below the lowest estimate: there selection lets a
+    likelihood level off but not fall, and it has to be followed until it does.
     """
-    centres = np.array([_centre(e) for e in evidence])
-    margin = 3 * priors.heterogeneity_scale
-    high = max(4 * priors.effect_scale, float(centres.max())) + margin
-    low = 0.0 if half_line else min(-4 * priors.effect_scale, float(centres.min())) - margin
-    step = min(_standard_error(e) for e in evidence) / fineness
-    points = min(int(np.ceil((high - low) / step)) + 1, _MAX_POINTS)
-    return np.linspace(low, high, max(points, 60))
+    high = max(centre(e) + 10 * spread(e) for e in evidence)
+    if prior_scale is None:
+        widest = max(standard_error(e) for e in evidence)
+        low = min(centre(e) for e in evidence) - 12 * widest
+    else:
+        high = max(high, 4 * prior_scale)
+        low = min(-4 * prior_scale, min(centre(e) - 10 * spread(e) for e in evidence))
+    return 0.0 if half_line else float(low), float(high)
 
 
 def literatures(
     groups: Sequence[Sequence[Evidence]],
     weights: Sequence[Array],
     *,
-    theta: Array,
+    mu_range: tuple[float, float],
+    margin: float,
     half_line: bool,
+    fineness: float,
 ) -> list[Literature]:
-    """Several literatures on one grid; curves of all are computed together."""
+    """Several literatures on one grid; curves of all are computed together.
+
+    The grid reaches `margin` beyond `mu_range` and has `fineness` steps to the smallest standard
+    error among the ordinary results.
+    """
+    pieces = [[_pieces(e) for e in group] for group in groups]
+    flat = [piece for group in pieces for result in group for _, piece in result]
+    designs = list(dict.fromkeys(_design(e) for group in groups for e in group))
+    precise = np.array([is_precise(e) and e.low == e.high for e in flat])
+    precise_design = np.array([is_precise(e) for e in designs])
+    ordinary = [e for e, p in zip(flat, precise, strict=True) if not p]
+    theta = _grid(ordinary, mu_range, margin, half_line=half_line, fineness=fineness)
     support = theta[::_THINNING]
     if support[-1] != theta[-1]:
         support = np.append(support, theta[-1])
-    pieces = [[_pieces(e) for e in group] for group in groups]
-    flat = [piece for group in pieces for result in group for _, piece in result]
-    floor = np.array([LOG_FLOOR if e.low == e.high else _INTERVAL_FLOOR for e in flat])
-    likelihood = np.maximum(curves.log_likelihood(flat, support), floor[:, None])
-    designs = list(dict.fromkeys(_design(e) for group in groups for e in group))
+    spline = _spline(
+        ordinary,
+        [e for e, p in zip(designs, precise_design, strict=True) if not p],
+        support,
+        half_line=half_line,
+    )
+    bumps = bump([e for e, p in zip(flat, precise, strict=True) if p])
+    tails = tail([e for e, p in zip(designs, precise_design, strict=True) if p])
     index = {design: u for u, design in enumerate(designs)}
-    chances = curves.band_probabilities(designs, support)[:, :-1]
-    open_bands = chances.shape[1]
-    log_bands = np.maximum(np.log(np.maximum(chances, 1e-300)), _BAND_FLOOR)
-    stack = np.concatenate([likelihood, log_bands.reshape(-1, support.size)])
-    spline = CubicSpline(support, stack.T)
+    open_bands = len(designs[0].cuts)
+    # places of pieces and designs among the ordinary, and among the precise, ones
+    column = np.where(precise, np.cumsum(precise) - 1, np.cumsum(~precise) - 1)
+    row = np.where(precise_design, np.cumsum(precise_design) - 1, np.cumsum(~precise_design) - 1)
     out = []
     start = 0
     for group, parts, c in zip(groups, pieces, weights, strict=True):
         owner = np.array([i for i, result in enumerate(parts) for _ in result])
         used, design = np.unique([index[_design(e)] for e in group], return_inverse=True)
-        bands_of_used = len(flat) + (used[:, None] * open_bands + np.arange(open_bands)).ravel()
-        rows = np.concatenate([np.arange(start, start + owner.size), bands_of_used])
+        mine = slice(start, start + owner.size)
+        plain = row[used[~precise_design[used]]]
+        bands = len(ordinary) + (plain[:, None] * open_bands + np.arange(open_bands)).ravel()
+        rows = np.concatenate([column[mine][~precise[mine]], bands]).astype(np.int64)
         out.append(
             Literature(
                 theta=theta,
                 half_line=half_line,
+                mu_range=mu_range,
                 curves=PPoly.construct_fast(spline.c[:, :, rows], spline.x),
+                bumps=bumps[:, column[mine][precise[mine]]],
+                tails=tails[:, :, row[used[precise_design[used]]]],
+                precise=precise[mine],
+                precise_design=precise_design[used],
                 owner=owner,
                 band=np.array([band for result in parts for band, _ in result]),
                 weights=c,
@@ -155,6 +209,45 @@ def literatures(
         )
         start += owner.size
     return out
+
+
+def _grid(
+    ordinary: Sequence[Evidence],
+    mu_range: tuple[float, float],
+    margin: float,
+    *,
+    half_line: bool,
+    fineness: float,
+) -> Array:
+    low = 0.0 if half_line else mu_range[0] - margin
+    high = mu_range[1] + margin
+    step = min((standard_error(e) for e in ordinary), default=np.inf) / fineness
+    points = min((high - low) / step + 1, _MAX_POINTS)
+    return np.linspace(low, high, max(int(np.ceil(points)), _MIN_POINTS))
+
+
+def _spline(
+    ordinary: Sequence[Evidence],
+    designs: Sequence[Evidence],
+    support: Array,
+    *,
+    half_line: bool,
+) -> PPoly:
+    """Log-likelihoods of the results, then log band probabilities of the designs, splined."""
+    stack = np.empty((0, support.size))
+    if ordinary:
+        floor = np.array([LOG_FLOOR if e.low == e.high else _INTERVAL_FLOOR for e in ordinary])
+        stack = np.maximum(curves.log_likelihood(ordinary, support), floor[:, None])
+    if designs:
+        chances = curves.band_probabilities(designs, support)[:, :-1]
+        logs = np.maximum(np.log(np.maximum(chances, 1e-300)), _BAND_FLOOR)
+        stack = np.concatenate([stack, logs.reshape(-1, support.size)])
+    if not len(stack):
+        return PPoly.construct_fast(np.empty((4, support.size - 1, 0)), support)
+    # curves of an unsigned effect depend on θ², so they are flat at 0
+    flat = (1, np.zeros(len(stack)))
+    ends = (flat, "not-a-knot") if half_line else "not-a-knot"
+    return CubicSpline(support, stack.T, bc_type=ends)
 
 
 def surface(literature: Literature, *, mu: Array, tau: Array, log_weights: Array) -> Array:
@@ -168,11 +261,28 @@ def surface(literature: Literature, *, mu: Array, tau: Array, log_weights: Array
 def mixed(literature: Literature, *, mu: Array, tau: Array) -> tuple[Array, Array]:
     """log M of the m pieces, (m, T, M), and A_j of the U designs, (U, J, T, M), summing to 1."""
     logs = mix(literature.curves, literature.theta, mu, tau, half_line=literature.half_line)
-    size = literature.owner.size
-    open_bands = literature.bands - 1
-    chances = np.exp(logs[size:]).reshape(-1, open_bands, tau.size, mu.size)
-    last = np.maximum(1.0 - chances.sum(axis=1, keepdims=True), 0.0)
-    return logs[:size], np.concatenate([chances, last], axis=1)
+    plain, plain_design = ~literature.precise, ~literature.precise_design
+    size, open_bands = int(plain.sum()), literature.bands - 1
+    pieces = np.empty((plain.size, tau.size, mu.size))
+    pieces[plain] = logs[:size]
+    chances = np.empty((plain_design.size, literature.bands, tau.size, mu.size))
+    bands = np.exp(logs[size:]).reshape(-1, open_bands, tau.size, mu.size)
+    chances[plain_design, :-1] = bands
+    chances[plain_design, -1] = np.maximum(1.0 - bands.sum(axis=1), 0.0)
+    if not plain.all():
+        pieces[literature.precise] = mixed_bumps(literature.bumps, mu, tau)
+    if not plain_design.all():
+        chances[literature.precise_design] = mixed_tails(literature.tails, mu, tau)
+    return pieces, chances
+
+
+def own_likelihoods(literature: Literature, theta: Array) -> Array:
+    """log L of each piece at single effects (G,), shape (m, G)."""
+    out = np.empty((literature.owner.size, theta.size))
+    out[~literature.precise] = literature.curves(theta).T[: int((~literature.precise).sum())]
+    if literature.precise.any():
+        out[literature.precise] = mixed_bumps(literature.bumps, theta, np.zeros(1))[:, 0]
+    return out
 
 
 def combine(literature: Literature, pieces: Array, chances: Array, log_weights: Array) -> Array:
@@ -195,22 +305,6 @@ def combine(literature: Literature, pieces: Array, chances: Array, log_weights: 
             terms = pieces[mine] + log_w[literature.band[mine], None]
             out[:, w] += c[mine[0]] * np.logaddexp.reduce(terms, axis=0)
     return out.reshape(*shape, -1)
-
-
-def _centre(e: Evidence) -> float:
-    """Rough location of one result's likelihood, to place the grid."""
-    ends = [x for x in (e.low, e.high) if np.isfinite(x)]
-    x = 0.0 if e.two_sided or not ends else float(np.mean(ends))
-    if e.kernel == "r":
-        return float(np.arctanh(np.clip(x, -0.999, 0.999)))
-    if e.kernel in ("f", "chi2"):
-        return float(np.sqrt(max(x * (e.df[0] if e.kernel == "f" else 1.0), 0.0))) / e.scale
-    return x / e.scale
-
-
-def _standard_error(e: Evidence) -> float:
-    """Standard error of one result near no effect, on the metric."""
-    return float(1 / np.sqrt(e.df[0])) if e.kernel == "r" else 1.0 / e.scale
 
 
 def _design(e: Evidence) -> Evidence:

@@ -10,14 +10,21 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
-from scipy.interpolate import CubicSpline
+from scipy.interpolate import CubicSpline, PchipInterpolator
 
 from netsize.effect_sizes.metrics import Metric
 from netsize.effect_sizes.records import Evidence
-from netsize.numerics.arrays import Array
+from netsize.numerics.arrays import Array, IntArray
 from netsize.numerics.grid import GridDistribution
 from netsize.synthesis.mixing import normal_cdf
-from netsize.synthesis.selection import Literature, Priors, effect_grid, literatures, mixed
+from netsize.synthesis.selection import (
+    Literature,
+    Priors,
+    literatures,
+    mixed,
+    own_likelihoods,
+    range_of_means,
+)
 from netsize.synthesis.selection_posterior import (
     Posterior,
     integrate,
@@ -163,10 +170,16 @@ def _literature(
     priors: Priors,
     level: float,
 ) -> list[Literature]:
-    half_line = not metric.signed
     everything = [e for group in groups for e in group]
-    theta = effect_grid(everything, priors, half_line=half_line, fineness=4.0 * level)
-    return literatures(groups, weights, theta=theta, half_line=half_line)
+    half_line = not metric.signed
+    return literatures(
+        groups,
+        weights,
+        mu_range=range_of_means(everything, half_line=half_line, prior_scale=priors.effect_scale),
+        margin=3 * priors.heterogeneity_scale,
+        half_line=half_line,
+        fineness=4.0 * level,
+    )
 
 
 def _along(mass: Array, edges: Array) -> GridDistribution:
@@ -174,12 +187,13 @@ def _along(mass: Array, edges: Array) -> GridDistribution:
 
 
 def _mean(posterior: Posterior) -> GridDistribution:
-    """Distribution of μ, its density splined between lattice points."""
-    density = posterior.joint.sum(axis=(0, 2))
-    density[[0, -1]] *= 2  # undo the trapezoid weights of the ends
-    edges = np.linspace(posterior.lattice.mu[0], posterior.lattice.mu[-1], _CELLS * _SPREAD + 1)
-    fine = CubicSpline(posterior.lattice.mu, density)((edges[1:] + edges[:-1]) / 2)
-    return _along(np.maximum(fine, 0.0), edges)
+    """Distribution of μ, its density interpolated between lattice points without overshoot."""
+    lattice = posterior.lattice
+    density = posterior.joint.sum(axis=(0, 2)) / lattice.mu_weights
+    even = np.linspace(lattice.mu[0], lattice.mu[-1], _CELLS * _SPREAD + 1)
+    edges = np.union1d(even, lattice.mu)
+    fine = PchipInterpolator(lattice.mu, density)((edges[1:] + edges[:-1]) / 2)
+    return _along(fine * np.diff(edges), edges)
 
 
 def _new_study(posterior: Posterior, literature: Literature) -> GridDistribution:
@@ -229,23 +243,39 @@ def _unprinted(posterior: Posterior, literature: Literature) -> GridDistribution
 def _shrunken(
     posterior: Posterior, literature: Literature, edges: Array
 ) -> tuple[GridDistribution | None, ...]:
-    """Density of θ_i ∝ L_i(θ) Σ [P(μ,τ)/M_i(μ,τ)] N(θ; μ, τ²), on the cells of the new study's."""
-    share = posterior.joint.sum(axis=2)
-    points = (edges[1:] + edges[:-1]) / 2
-    size = literature.owner.size
-    log_own = literature.curves(points).T[:size]
-    top = log_own.max(axis=1, keepdims=True)
+    """Density of θ_i ∝ L_i(θ) Σ [P(μ,τ)/M_i(μ,τ)] N(θ; μ, τ²), one a result.
+
+    Ordinary results share the cells `edges`; a precise one gets cells of its own, as narrow as it.
+    """
     log_mixed, _ = mixed(literature, mu=posterior.lattice.mu, tau=posterior.lattice.tau)
-    density = np.zeros((size, points.size))
-    for t, tau in enumerate(posterior.lattice.tau):
-        cells = np.diff(
-            normal_cdf(edges, posterior.lattice.mu, tau, half_line=literature.half_line), axis=1
-        )
-        density += (share[t] / np.exp(log_mixed[:, t] - top)) @ cells
-    density *= np.exp(log_own - top)
     counts = np.bincount(literature.owner, minlength=literature.weights.size)
-    where = {int(owner): row for row, owner in enumerate(literature.owner)}
-    return tuple(
-        _along(density[where[i]], edges) if counts[i] == 1 else None
-        for i in range(literature.weights.size)
-    )
+    out: list[GridDistribution | None] = [None] * literature.weights.size
+    ordinary = np.flatnonzero(~literature.precise)
+    parts = [(ordinary, edges)] if ordinary.size else []
+    for piece, (at, width, _) in zip(
+        np.flatnonzero(literature.precise), literature.bumps.T, strict=True
+    ):
+        parts.append((np.array([piece]), at + width * np.linspace(-6.0, 6.0, _CELLS + 1)))
+    for pieces, cells in parts:
+        density = _own_density(posterior, literature, log_mixed[pieces], pieces, cells)
+        for piece, mass in zip(pieces, density, strict=True):
+            owner = int(literature.owner[piece])
+            if counts[owner] == 1:
+                out[owner] = _along(mass, cells)
+    return tuple(out)
+
+
+def _own_density(
+    posterior: Posterior, literature: Literature, log_mixed: Array, pieces: IntArray, edges: Array
+) -> Array:
+    """Unnormalised masses of the true effects of some pieces on cells, (len(pieces), C)."""
+    share = posterior.joint.sum(axis=2)
+    log_own = own_likelihoods(literature, (edges[1:] + edges[:-1]) / 2)[pieces]
+    top = log_own.max(axis=1, keepdims=True)
+    density = np.zeros(log_own.shape)
+    for t, tau in enumerate(posterior.lattice.tau):
+        felt = share[t] > _NEGLIGIBLE
+        cdf = normal_cdf(edges, posterior.lattice.mu[felt], tau, half_line=literature.half_line)
+        weight = share[t][felt] / np.exp(log_mixed[:, t, felt] - top)
+        density += weight @ np.diff(cdf, axis=1)
+    return np.asarray(density * np.exp(log_own - top))

@@ -19,13 +19,16 @@ from numpy.polynomial.legendre import leggauss
 from scipy.special import logsumexp
 
 from netsize.numerics.arrays import Array
+from netsize.synthesis.precise import nodes_around
 from netsize.synthesis.selection import Literature, Priors, surface
 
 __all__ = ["Lattice", "Posterior", "integrate", "negligible", "total_evidence"]
 
 _KEEP = 16.0  # log units below the maximum at which a window is cut
-_COARSE = (33, 7, 5)  # points of μ, τ, each ω while the windows are drawn
-_FINE = (65, 12, 9)  # and for the answer, before any refinement
+_COARSE = (33, 7)  # points of μ and τ while the windows are drawn
+_FINE = (65, 12)  # and for the answer, before any refinement
+# points of each ω, by how many there are, drawing windows and for the answer
+_OMEGA = {0: (1, 1), 1: (5, 9), 2: (4, 7), 3: (3, 5)}
 _ROUNDS = 4
 _NULL_NODES = 40
 
@@ -34,10 +37,11 @@ Window: TypeAlias = tuple[float, float]
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Lattice:
-    """Nodes of μ (M,), τ (T,) and each log ω, the cell edges that quadrature weights imply, and the
-    (W, J) log weights of every combination of ω."""
+    """Nodes of μ (M,) with trapezoid weights, of τ (T,) and each log ω with the cell edges that
+    their quadrature weights imply, and the (W, J) log weights of every combination of ω."""
 
     mu: Array
+    mu_weights: Array
     tau: Array
     tau_edges: Array
     log_omega: tuple[Array, ...]
@@ -64,23 +68,22 @@ def integrate(
 ) -> Posterior:
     """The posterior at a refinement `level` (1 the coarsest); without selection every ω_j is 1."""
     floor = np.log(priors.printing_floor)
-    margin = 3 * priors.heterogeneity_scale
-    low = 0.0 if literature.half_line else float(literature.theta[0]) + margin
     axes = literature.bands - 1 if selection else 0
     whole: list[Window] = [
-        (low, float(literature.theta[-1]) - margin),
+        literature.mu_range,
         (0.0, 4 * priors.heterogeneity_scale),
         *[(floor, 0.0)] * axes,
     ]
     windows = whole
     for _ in range(_ROUNDS):
-        lattice, log_joint = _evaluate(literature, priors, windows, _COARSE)
+        sizes: tuple[int, ...] = (*_COARSE, _OMEGA[axes][0])
+        lattice, log_joint = _evaluate(literature, priors, windows, sizes)
         drawn = _windows(lattice, log_joint, windows, whole)
         shrunk = max((w[1] - w[0]) / (v[1] - v[0]) for w, v in zip(drawn, windows, strict=True))
         windows = drawn
         if shrunk > 0.6:
             break
-    sizes = tuple(int(np.ceil(n * level)) for n in _FINE)
+    sizes = tuple(int(np.ceil(n * level)) for n in (*_FINE, _OMEGA[axes][1]))
     lattice, log_joint = _evaluate(literature, priors, windows, sizes)
     total = float(logsumexp(log_joint))
     null_axes = [_legendre((floor, 0.0), _NULL_NODES if axes == 1 else 12)] * axes
@@ -120,9 +123,9 @@ def _evaluate(
 ) -> tuple[Lattice, Array]:
     """Log-likelihood plus log prior plus log quadrature weight at every lattice point."""
     n_mu, n_tau, n_omega = sizes
-    mu = np.linspace(*windows[0], n_mu)
-    trapezoid = np.full(n_mu, mu[1] - mu[0])
-    trapezoid[[0, -1]] /= 2
+    mu = nodes_around(literature.bumps, *windows[0], n_mu)
+    trapezoid = np.diff(mu, prepend=mu[0], append=mu[-1])
+    trapezoid = (trapezoid[1:] + trapezoid[:-1]) / 2
     tau, tau_weights, tau_edges = _legendre(windows[1], n_tau)
     omega = [_legendre(w, n_omega) for w in windows[2:]]
     log_weights = _combinations([o[0] for o in omega], literature.bands)
@@ -138,6 +141,7 @@ def _evaluate(
     log_joint += log_omega_weights
     lattice = Lattice(
         mu=mu,
+        mu_weights=trapezoid,
         tau=tau,
         tau_edges=tau_edges,
         log_omega=tuple(o[0] for o in omega),

@@ -12,7 +12,7 @@ from dataclasses import dataclass
 from itertools import product
 
 import numpy as np
-from scipy.interpolate import CubicSpline
+from scipy.interpolate import Akima1DInterpolator, CubicSpline
 from scipy.special import ndtr
 
 from netsize.effect_sizes.metrics import Metric
@@ -20,13 +20,16 @@ from netsize.effect_sizes.records import Evidence
 from netsize.numerics.arrays import Array
 from netsize.numerics.grid import GridDistribution
 from netsize.synthesis.mixing import normal_cdf
-from netsize.synthesis.selection import Literature, Priors, effect_grid, literatures, surface
+from netsize.synthesis.precise import nodes_around
+from netsize.synthesis.selection import Literature, Priors, literatures, range_of_means, surface
 
 __all__ = ["ProfileFit", "fit_profile"]
 
 _KEEP = 12.0  # log units below the peak at which the window of μ is cut; Φ(-√24) < 1e-6
 _COARSE = (49, 9, 9)  # points of μ, τ, ω while the windows are drawn
 _FINE = (81, 17, 13)
+_ROUNDS = 6
+_CLIFF = 12.0  # log units below a peak that no longer shape it
 _SPREAD = 8  # finer points splined per lattice point
 
 
@@ -58,21 +61,25 @@ def fit_profile(
     priors: Priors | None = None,
     fineness: float = 6.0,
 ) -> ProfileFit:
-    """Fit one literature; of the priors only the ranges serve: τ ≤ 4 s_τ, ω in [floor, 1]."""
+    """Fit one literature; of the priors only the ranges of τ, up to 4 s_τ, and of ω serve."""
     priors = priors or Priors.default(metric)
     half_line = not metric.signed
-    theta = effect_grid(evidence, priors, half_line=half_line, fineness=fineness)
-    literature = literatures([evidence], [weights], theta=theta, half_line=half_line)[0]
-    margin = 3 * priors.heterogeneity_scale
-    low = 0.0 if half_line else float(theta[0]) + margin
-    whole = (low, float(theta[-1]) - margin)
+    whole = range_of_means(evidence, half_line=half_line, prior_scale=None)
+    literature = literatures(
+        [evidence],
+        [weights],
+        mu_range=whole,
+        margin=3 * priors.heterogeneity_scale,
+        half_line=half_line,
+        fineness=fineness,
+    )[0]
     floor = float(np.log(priors.printing_floor))
     mu_window, tau_top, omega_window = whole, 4 * priors.heterogeneity_scale, (floor, 0.0)
-    for _ in range(3):
+    for _ in range(_ROUNDS):
         ridge = _ridge(literature, mu_window, tau_top, omega_window, _COARSE)
         near = ridge.height > ridge.height.max() - _KEEP
         kept = np.flatnonzero(near)
-        step = ridge.mu[1] - ridge.mu[0]
+        step = (mu_window[1] - mu_window[0]) / (_COARSE[0] - 1)
         drawn = (
             max(float(ridge.mu[kept[0]] - step), whole[0]),
             min(float(ridge.mu[kept[-1]] + step), whole[1]),
@@ -108,7 +115,7 @@ def _ridge(
     omega_window: tuple[float, float],
     sizes: tuple[int, int, int],
 ) -> _Ridge:
-    mu = np.linspace(*mu_window, sizes[0])
+    mu = nodes_around(literature.bumps, *mu_window, sizes[0])
     tau = np.linspace(0.0, tau_top, sizes[1])
     axes = literature.bands - 1
     points = sizes[2] if axes == 1 else max(5, sizes[2] // 2)
@@ -127,15 +134,28 @@ def _ridge(
 
 
 def _peak(values: Array, nodes: Array) -> tuple[Array, Array]:
-    """Maximum along the last axis and where, on a cubic spline through the nodes."""
-    fine = np.linspace(nodes[0], nodes[-1], (nodes.size - 1) * _SPREAD + 1)
+    """Maximum along the last axis and where, on a cubic spline around the best node.
+
+    Values far below the best node are levelled first, and the gain over it is held to an eighth of
+    its lead over the lower neighbour, which no parabola exceeds: a spline overshoots cliffs.
+    """
+    best = values.argmax(axis=-1)[..., None]
+    top = np.take_along_axis(values, best, axis=-1)
+    values = np.maximum(values, top - _CLIFF)
+    last = nodes.size - 1
+    beside = [np.clip(best + step, 0, last) for step in (-1, 1)]
+    lower = np.minimum(*(np.take_along_axis(values, b, axis=-1) for b in beside))
+    fine = np.linspace(nodes[0], nodes[-1], last * _SPREAD + 1)
     splined = CubicSpline(nodes, values, axis=-1)(fine)
+    near = np.abs(np.arange(fine.size) - best * _SPREAD) <= _SPREAD
+    splined = np.where(near, np.minimum(splined, top + (top - lower) / 8), -np.inf)
     return splined.max(axis=-1), fine[splined.argmax(axis=-1)]
 
 
 def _conclude(ridge: _Ridge, whole: tuple[float, float], half_line: bool) -> ProfileFit:
-    mu = np.linspace(ridge.mu[0], ridge.mu[-1], (ridge.mu.size - 1) * _SPREAD + 1)
-    height = CubicSpline(ridge.mu, ridge.height)(mu)
+    even = np.linspace(ridge.mu[0], ridge.mu[-1], _FINE[0] * _SPREAD)
+    mu = np.union1d(even, ridge.mu)
+    height = Akima1DInterpolator(ridge.mu, ridge.height, method="makima")(mu)
     top = int(height.argmax())
     root = np.sqrt(2 * np.maximum(height[top] - height, 0.0))
     cdf = ndtr(np.sign(mu - mu[top]) * root)
