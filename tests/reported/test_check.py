@@ -88,7 +88,7 @@ def test_rounding_range():
         "z = 2.31, n = 80, p = .021",
         "p = .03, n = 40",
         "M = 5.2, SD = 1.1, n = 20 vs M = 4.4, SD = 1.2, n = 20, t(38) = 2.20, p = .034",
-        "12/40 vs 22/41, χ²(1, N = 81) = 4.9, p = .03",
+        "12/40 vs 22/41, χ²(1, N = 81) = 4.65, p = .03",
     ],
 )
 def test_agreement_within_rounding(text):
@@ -137,6 +137,13 @@ def test_significance_is_judged_at_the_papers_own_level():
         ("t(18) = 2.31, n = 20 [paired]", "df", "df = 19"),
         ("r(48) = .31, n = 60", "df", "df = 58"),
         ("F(2, 57) = 3.45, n = 40", "df", "1 to 39"),
+        ("12/40 vs 22/41, χ²(1, N = 81) = 5.46", "counts", "give 4.65 or 3.73"),
+        ("12/30 vs 5/30, OR = 3.93, 95% CI [0.99, 15.2]", "counts", "give 3.33 or 0.3"),
+        (
+            "M = 5.2, SD = 1.1, n = 20 vs M = 4.4, SD = 1.2, n = 20, F(1, 38) = 17.6",
+            "means",
+            "give F = 4.83",
+        ),
         (
             "M = 5.2, SD = 1.1, n = 20 vs M = 4.4, SD = 1.2, n = 20, t(38) = 4.2",
             "means",

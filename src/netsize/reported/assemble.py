@@ -47,7 +47,7 @@ def fields_of(
     fields = family_fields(context)
     if fields is None:
         return None
-    p = group.first("p")
+    p = group.p()
     fields["p"] = p.number if p is not None else None
     fields["also"] = also(group, fields)
     fields["tails"] = _tails(group, tags, defaults, text)

@@ -14,10 +14,11 @@ from typing import Literal, TypeAlias
 
 from netsize.reported.implied import Range, df_of, effect_candidates, p_range, rounding_range
 from netsize.reported.records import Printed, ReportedResult
+from netsize.reported.summaries import counts_chi_squares, counts_ratio, means_t
 
 __all__ = ["Finding", "FindingKind", "check"]
 
-FindingKind: TypeAlias = Literal["p", "effect", "df", "means"]
+FindingKind: TypeAlias = Literal["p", "effect", "df", "means", "counts"]
 
 _USUAL_CUT = 0.05
 _TINY = 1e-12
@@ -31,7 +32,7 @@ class Finding:
     ----------
     kind : "p" (p against its statistic), "effect" (printed effect size against the statistic),
         "df" (degrees of freedom against numbers of participants), "means" (means and SDs against
-        the statistic).
+        the statistic), "counts" (a printed ratio or chi-square against the counts).
     message : what disagrees and what would agree, in words.
     changes_significance : True where printed and recomputed p lie on opposite sides of the
         paper's significance level.
@@ -54,7 +55,7 @@ def check(result: ReportedResult) -> tuple[Finding, ...]:
     """Every disagreement among the printed numbers of `result`; () where all agree."""
     return tuple(
         finding
-        for part in (_check_p, _check_effects, _check_df, _check_means)
+        for part in (_check_p, _check_effects, _check_df, _check_means, _check_counts)
         for finding in part(result)
     )
 
@@ -240,23 +241,45 @@ def _expected_df(result: ReportedResult, total: int) -> tuple[float, float, str]
 
 
 def _check_means(result: ReportedResult) -> Iterator[Finding]:
-    if result.family != "t" or len(result.groups) != 2 or result.value is None:
+    if result.family not in ("t", "f") or len(result.groups) != 2 or result.value is None:
         return
     if result.relation != "=" or result.design not in (None, "two-groups"):
         return
-    a, b = result.groups
-    pooled = ((a.n - 1) * a.sd**2 + (b.n - 1) * b.sd**2) / (a.n + b.n - 2)
-    welch = a.sd**2 / a.n + b.sd**2 / b.n
-    difference = abs(a.mean - b.mean)
-    expected = difference / math.sqrt(pooled * (1 / a.n + 1 / b.n))
+    if result.family == "f" and result.df[:1] != (1.0,):
+        return
+    expected = means_t(*result.groups)
+    printed = math.sqrt(result.value) if result.family == "f" else abs(result.value)
     # means and SDs are rounded too: a tenth of t and a tenth of its unit covers two decimals
-    slack = 0.1 * expected + 0.1
-    if min(abs(abs(result.value) - t) for t in (expected, difference / math.sqrt(welch))) > slack:
+    slack = 0.1 * expected[0] + 0.1
+    if min(abs(printed - t) for t in expected) > slack:
+        symbol, shown = ("F", expected[0] ** 2) if result.family == "f" else ("t", expected[0])
         yield Finding(
             "means",
-            f"t is printed as {_plain(result.value)}, "
-            f"but the means and SDs give t = {expected:.2f}",
+            f"{symbol} is printed as {_plain(result.value)}, "
+            f"but the means and SDs give {symbol} = {shown:.2f}",
         )
+
+
+def _check_counts(result: ReportedResult) -> Iterator[Finding]:
+    """A ratio or chi-square printed beside counts, against what the counts give."""
+    if result.family != "counts":
+        return
+    for name, printed in result.also:
+        if printed.relation != "=":
+            continue
+        low, high = rounding_range(printed)
+        expected: tuple[float, ...] = ()
+        if name == "chi2":
+            expected = counts_chi_squares(*result.counts)
+        elif ratio := counts_ratio(name, *result.counts):
+            expected = (ratio, 1 / ratio)
+        if expected and not any(low - 1e-9 <= e <= high + 1e-9 for e in expected):
+            shown = " or ".join(f"{e:.3g}" for e in expected)
+            symbol = "χ²" if name == "chi2" else name
+            yield Finding(
+                "counts",
+                f"{symbol} is printed as {_plain(printed.value)}, but the counts give {shown}",
+            )
 
 
 # --- words ---------------------------------------------------------------------------------------

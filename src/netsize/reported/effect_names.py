@@ -27,7 +27,17 @@ def effect_name(item: Item) -> str:
         return "f2" if "2" in symbol else "f"
     if item.kind == "slope":
         return "beta" if symbol.startswith(("β", "beta")) else "b"
+    if item.kind in ("odds", "ratio"):
+        return _ratio_name(symbol)
     return _RECORDED_AS.get(item.kind, item.name)
+
+
+def _ratio_name(symbol: str) -> str:
+    """OR, RR, HR or IRR, with "a" before it where it is adjusted."""
+    for name, starts in (("OR", "o"), ("IRR", "ir"), ("HR", "h"), ("RR", "r")):
+        if symbol.removeprefix("a").startswith(starts):
+            return f"a{name}" if symbol[0] == "a" else name
+    return symbol
 
 
 def _mean_difference_name(symbol: str) -> str:

@@ -207,7 +207,7 @@ def from_rank(context: Context) -> Fields:
 
 
 def from_p(context: Context) -> Fields:
-    item = context.group.first("p")
+    item = context.group.p()
     assert item is not None
     if not context.sizes.n:
         raise Fault("p alone needs its test or the number of participants: p = .03, n = 40")

@@ -14,7 +14,7 @@ from dataclasses import dataclass, field
 from typing import Any
 
 from netsize.reported import patterns
-from netsize.reported.items import PRIMARY, Item
+from netsize.reported.items import NOT_SIGNIFICANT, PRIMARY, Item
 from netsize.reported.tags import merged
 
 __all__ = ["Group", "Line", "group_items"]
@@ -44,6 +44,11 @@ class Group:
     def first(self, *kinds: str) -> Item | None:
         """The first item of one of these kinds."""
         return next((i for i in self.items if i.kind in kinds), None)
+
+    def p(self) -> Item | None:
+        """The p printed for the test: a number where one stands beside "n.s."."""
+        found = self.every("p")
+        return next((i for i in found if i.name != NOT_SIGNIFICANT), found[0] if found else None)
 
     def every(self, kind: str) -> list[Item]:
         """All items of this kind, in order."""
@@ -136,7 +141,7 @@ def _joins(group: Group, item: Item, text: str) -> bool:
         return True
     if group.primary is None and all(i.kind == "size" for i in group.items):
         return _only_connectors(gap, patterns.SAMPLE_WORDS)  # "n = 40, p = .03", not "N = 80 ..."
-    same = [i for i in group.items if i.kind == item.kind]
+    same = [i for i in group.items if i.kind == item.kind and i.name != NOT_SIGNIFICANT]
     return not same or (item.kind == "smd" and all(i.name != item.name for i in same))
 
 
@@ -166,7 +171,9 @@ def _same_test(before: Item, item: Item, gap: str) -> bool:
     if not _only_connectors(gap):
         return False
     if before.kind == "pair":
-        return item.kind == "chi"
+        return item.kind in ("chi", "odds", "ratio", "z")
+    if before.kind == "chi" and before.arguments == (1.0,):
+        return item.kind in ("odds", "ratio")
     if "and" in gap:
         return False
     if before.kind == "r" and not before.arguments:

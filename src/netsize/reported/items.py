@@ -7,12 +7,14 @@ from typing import Any
 
 from netsize.reported.records import Counts, Interval, Printed
 
-__all__ = ["PRIMARY", "Item"]
+__all__ = ["NOT_SIGNIFICANT", "PRIMARY", "Item"]
 
 # Kinds that make a result of their own; the rest describe the test beside which they stand.
 PRIMARY = frozenset(
     ("t", "F", "r", "z", "chi", "wald", "rank", "odds", "ratio", "pair", "slope", "estimate")
 )
+
+NOT_SIGNIFICANT = "n.s."  # the name of a p that is printed in words
 
 
 @dataclass(slots=True)

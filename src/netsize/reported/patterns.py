@@ -58,6 +58,7 @@ _PERCENT = r"[0-9]{1,3}(?:[.,][0-9]{1,3})?[ ]?%"
 _PARTIAL_SQUARED = (
     r"[ _-]?(?:p|G|partial)?[ _-]?(?:\^?2|sq(?:uared?)?\b)(?:[ _]?(?:p|G|partial)\b)?"
 )
+_ADJUSTED = r"(?:[Aa]dj(?:usted|\.)?[ ])?"
 _SYMBOLS = (
     ("tag", "[", r"\["),
     (
@@ -82,11 +83,15 @@ _SYMBOLS = (
         r"(?:[Pp]artial[ -]|[Gg]enerali[sz]ed[ -])?"
         r"(?:η|ω|ε|[Ee]ta|[Oo]mega|[Ee]psilon|[nh](?=p))" + _PARTIAL_SQUARED,
     ),
-    ("odds", "OoaA", r"(?:[Oo]dds[ ]ratio|[aA]?OR)s?\b(?:[ ]?\(a?OR\))?"),
+    (
+        "odds",
+        "OoaA",
+        rf"{_ADJUSTED}(?:[Oo]dds[ ]ratio|[aA]?OR)s?\b(?:[ ]?\(a?OR\))?",
+    ),
     (
         "ratio",
-        "aRrHhI",
-        r"(?:a?RR|a?HR|IRR|[Rr]isk[ ]ratio|[Rr]elative[ ]risk|"
+        "aARrHhI",
+        rf"{_ADJUSTED}(?:a?RR|a?HR|IRR|[Rr]isk[ ]ratio|[Rr]elative[ ]risk|"
         r"[Hh]azards?[ ]ratio)\b(?:[ ]?\([a-zA-Z]{1,4}\))?",
     ),
     (
@@ -107,7 +112,12 @@ _SYMBOLS = (
         r"[pP](?:[ -]?[vV]alue)?"
         r"(?:[ _]?(?:one|two|1|2)[ -]?(?:tailed|sided|tail))?(?![\w'])",
     ),
-    ("ns", "nN", r"[nN]\.[ ]?[sS]\.|[nN][sS](?![\w.'=<>]|[ ]?[=<>])"),
+    (
+        "ns",
+        "nN",
+        r"[nN]\.[ ]?[sS]\.|[nN][sS](?!\.?[\w'=<>]|[ ]?[=<>])"
+        r"|(?:[nN]ot|[nN]on)[ -]?(?:statistically[ ])?significant\b",
+    ),
     (
         "size",
         "nN",
@@ -264,7 +274,11 @@ TABLE_2X2 = re.compile(
 SENTENCE_END = re.compile(r"[.!?][)\]\"']?[ \t]{1,12}(?=[A-Z(\"'])|\n")
 ABBREVIATION = re.compile(r"(?:vs|cf|e\.g|i\.e|resp|Exp|Fig|No|approx|al)\.?\Z")
 WORD = re.compile(r"[^\W\d_][^\W\d_']{0,30}")
-LABEL_WITHIN_LINE = re.compile(r"[;.|][ \t]{0,12}([^;:.|\n]{1,80}):[ \t]{0,12}\Z")
+# "; Exp. 3: " or ". Lee et al.: " before a further statistic of a line
+LABEL_WITHIN_LINE = re.compile(
+    r"[;.|][ \t]{0,12}((?:[^;:.|\n]|(?<=\bal)\.|(?<=\b[A-Z])\.|(?<=\b(?:Exp|Nos|Std|Vol))\."
+    r"|(?<=\b(?:Expt|Expe))\.|(?<=\b(?:No|St|Nr))\.){1,80}):[ \t]{0,12}\Z"
+)
 DESIGN_WORDS = re.compile(
     r"\b(?:(?P<paired>[Pp]aired|[Dd]ependent|[Ww]ithin[ -]subjects?|[Mm]atched|"
     r"[Rr]epeated[ -]measures)"

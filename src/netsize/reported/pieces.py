@@ -7,7 +7,7 @@ from collections.abc import Callable
 
 from netsize.reported import patterns
 from netsize.reported.faults import Fault
-from netsize.reported.items import Item
+from netsize.reported.items import NOT_SIGNIFICANT, Item
 from netsize.reported.numbers import decimal, whole
 from netsize.reported.records import Counts, Interval, Printed
 from netsize.reported.tags import parse_settings
@@ -97,7 +97,7 @@ def _size(match: re.Match[str], text: str) -> Item | None:
 
 
 def _ns(match: re.Match[str], text: str) -> Item | None:
-    return Item("p", "n.s.", match.start(), match.end(), Printed(0.05, ">", 2))
+    return Item("p", NOT_SIGNIFICANT, match.start(), match.end(), Printed(0.05, ">", 2))
 
 
 def _pair(match: re.Match[str], text: str) -> Item | None:

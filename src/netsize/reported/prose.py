@@ -9,7 +9,8 @@ from netsize.reported.assemble import fields_of
 from netsize.reported.faults import Fault
 from netsize.reported.grouping import Group, Line, group_items
 from netsize.reported.items import Item
-from netsize.reported.labels import label_before
+from netsize.reported.joining import joined
+from netsize.reported.labels import citation_beside, label_before
 from netsize.reported.records import ReportedResult, Unread
 from netsize.reported.scanner import scan
 from netsize.reported.source import Source
@@ -32,7 +33,8 @@ def read_prose(source: Source) -> tuple[list[ReportedResult], list[Unread]]:
             source.text, line.start, line.end
         )
         floor = line.start
-        for group in line.groups:
+        groups = joined(line.groups, source.text)
+        for group in groups:
             group.faults[:0] = line.faults
             before, floor = floor, group.end
             try:
@@ -100,16 +102,18 @@ def _named(
 
 
 def _labels(groups: list[Group], line: Line, source: Source) -> list[str | None]:
-    """The label of each group: its own within the line, else that of the group before it."""
+    """The label of each group: its own, else that of the line."""
     names: list[str | None] = []
-    for index, group in enumerate(groups):
-        if index == 0:
-            lead = source.text[line.start : _first_statistic(group)]
-            found = label_before(lead)
-            names.append(_words(found, line.start, source))
-            continue
-        within = patterns.LABEL_WITHIN_LINE.search(source.text, groups[index - 1].end, group.start)
-        names.append(source.words(*within.span(1)) if within else names[-1])
+    text, floor, name = source.text, line.start, None
+    for group in groups:
+        first = _first_statistic(group)
+        if floor == line.start:
+            name = _words(label_before(text[floor:first]), floor, source)
+        elif within := patterns.LABEL_WITHIN_LINE.search(text, floor, group.start):
+            name = source.words(*within.span(1))
+        cited = None if name else citation_beside(text, floor, first, group.end)
+        names.append(source.words(*cited) if cited else name)
+        floor = group.end
     return names
 
 

@@ -30,6 +30,7 @@ class Sizes:
 
 
 NO_SIZES = Sizes()
+PAIRED_NOTE = "df = n - 1: read as a paired test; [one-sample] or [two-groups] say otherwise"
 
 
 @dataclass(frozen=True, slots=True)
@@ -57,7 +58,7 @@ def sizes_of(group: Group, tags: Settings, defaults: Settings) -> Sizes:
 def _printed(group: Group) -> Sizes:
     found = [i for i in group.items if i.kind == "size"]
     if not found:
-        inside = group.primary.sizes if group.primary is not None else ()
+        inside = next((i.sizes for i in group.items if i.sizes), ())
         return Sizes(inside, False, "printed") if inside else NO_SIZES
     described = any(i.kind == "mean" for i in group.items)
     parts = [i for i in found if "capital" not in i.flags]
@@ -90,6 +91,9 @@ def fit_to_df(sizes: Sizes, df: tuple[float, ...], design: str | None) -> Fit:
     if len(sizes.n) != 1:
         if len(sizes.n) == 2 and design in ("paired", "one-sample") and _same(sizes.n):
             return Fit(sizes.n[:1]) if error == sizes.n[0] - 1 else Fit(sizes.n)
+        pairs = len(sizes.n) == 2 and _same(sizes.n) and sizes.n[0] > 2
+        if pairs and numerator == 1 and error == sizes.n[0] - 1 and design is None:
+            return Fit(sizes.n[:1], "paired", "assumed", (PAIRED_NOTE,))
         implied = "two-groups" if len(sizes.n) == 2 and numerator == 1 else None
         return Fit(sizes.n, implied, "printed")
     n = sizes.n[0]
@@ -104,8 +108,7 @@ def fit_to_df(sizes: Sizes, df: tuple[float, ...], design: str | None) -> Fit:
         note = f"n = {n} read as the size of each group, since df = 2n - 2"
         return Fit((n, n), "two-groups", "assumed", (note,))
     if error == n - 1 and n > 2:
-        note = "df = n - 1: read as a paired test; [one-sample] or [two-groups] say otherwise"
-        return Fit(sizes.n, "paired", "assumed", (note,))
+        return Fit(sizes.n, "paired", "assumed", (PAIRED_NOTE,))
     return Fit(sizes.n)
 
 

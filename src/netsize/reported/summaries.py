@@ -1,12 +1,15 @@
-"""Means, SDs and sizes of two groups, where all of them are printed."""
+"""Means, SDs and sizes of two groups, where all of them are printed; what two groups imply."""
 
 from __future__ import annotations
 
+import math
+
 from netsize.reported.faults import Fault
 from netsize.reported.grouping import Group
+from netsize.reported.records import Counts
 from netsize.reported.records import Group as GroupSummary
 
-__all__ = ["complete_means"]
+__all__ = ["complete_means", "counts_chi_squares", "counts_ratio", "means_t"]
 
 
 def complete_means(group: Group) -> tuple[GroupSummary, ...]:
@@ -35,3 +38,33 @@ def _describing_sizes(group: Group) -> tuple[int, ...]:
             return only.sizes
         return only.sizes * 2 if "each" in only.flags else ()
     return tuple(n for i in sizes for n in i.sizes)
+
+
+def means_t(a: GroupSummary, b: GroupSummary) -> tuple[float, float]:
+    """Size of t of two independent groups: with the pooled variance, and Welch's."""
+    difference = abs(a.mean - b.mean)
+    pooled = ((a.n - 1) * a.sd**2 + (b.n - 1) * b.sd**2) / max(a.n + b.n - 2, 1)
+    welch = a.sd**2 / a.n + b.sd**2 / b.n
+    return difference / math.sqrt(pooled * (1 / a.n + 1 / b.n)), difference / math.sqrt(welch)
+
+
+def counts_ratio(name: str, a: Counts, b: Counts) -> float | None:
+    """Odds ratio ("OR") or risk ratio ("RR") of two groups; None for other names, empty cells."""
+    if not 0 < a.events < a.n or not 0 < b.events < b.n:
+        return None
+    risks = (a.events / a.n) / (b.events / b.n)
+    if name == "RR":
+        return risks
+    return risks * (b.n - b.events) / b.n / ((a.n - a.events) / a.n) if name == "OR" else None
+
+
+def counts_chi_squares(a: Counts, b: Counts) -> tuple[float, ...]:
+    """Chi-square of a 2×2 table: Pearson's, then Yates's; () with an empty margin."""
+    events, total = a.events + b.events, a.n + b.n
+    margins = events * (total - events) * a.n * b.n
+    if margins == 0:
+        return ()
+    across = abs(a.events * (b.n - b.events) - b.events * (a.n - a.events))
+    return tuple(
+        total * max(across - less, 0.0) ** 2 / margins for less in (0.0, min(total / 2, across))
+    )

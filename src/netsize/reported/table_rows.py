@@ -9,6 +9,7 @@ from netsize.reported.columns import unknown_column
 from netsize.reported.faults import Fault
 from netsize.reported.grouping import Group, group_items
 from netsize.reported.items import Item
+from netsize.reported.joining import joined
 from netsize.reported.prose import SHARED, marked_place
 from netsize.reported.records import ReportedResult, Unread
 from netsize.reported.rows import Row, row_group
@@ -104,7 +105,7 @@ def _printed_groups(cell: Cell, row: Row) -> list[Group]:
     groups = [
         group
         for line in group_items(scan(text), text)
-        for group in _with_line_settings(line.groups, line.settings, line.faults)
+        for group in _with_line_settings(joined(line.groups, text), line.settings, line.faults)
     ]
     if not groups:
         raise Fault("this cell holds no statistic that can be read", cell.start, cell.end)
