@@ -164,3 +164,15 @@ def test_the_faulty_part_is_marked_where_it_stands():
     """Not at the first place of the line with the same characters."""
     (place,) = netsize.read("Here r = .31, n = 50. But r = .31. Elsewhere r(48) = .2.").unread
     assert "n = 50. But >>r = .31<<. Elsewhere" in unread_place(place)
+
+
+def test_what_is_no_statistic_is_listed_and_stops_nothing(tmp_path, capsys):
+    path = tmp_path / "literature.txt"
+    path.write_text("A: t(38) = 2.31\nThe best(38) = 2.3 of all, at t = 3 s\n", encoding="utf-8")
+    assert main(["read", str(path)]) == 0
+    out = capsys.readouterr().out
+    assert "1 result read, from 1 sample." in out
+    assert "Passed over, being no statistic:" in out
+    assert "The >>best(38)<< = 2.3 of all" in out
+    assert main(["effects", str(path)]) == 0
+    assert "best" in capsys.readouterr().out

@@ -43,7 +43,10 @@ def _result(r: ReportedResult) -> str:
 
 def _summary(reading: Reading) -> str:
     lines = [_result(r) for r in reading.results]
-    lines += [f"UNREAD {' '.join(u.text.split())!r}: {u.reason[:60]}" for u in reading.unread]
+    lines += [
+        f"{'PASSED OVER' if u.harmless else 'UNREAD'} {' '.join(u.text.split())!r}: {u.reason[:60]}"
+        for u in reading.unread
+    ]
     return " || ".join(lines)
 
 

@@ -60,7 +60,8 @@ def show_reading(reading: Reading, findings: Findings) -> None:
         [f"{r.label}: {r.left_out}" for r in results if r.left_out is not None],
     )
     show_text(_summary(reading))
-    show_list("Not understood:", [unread_place(place) for place in reading.unread])
+    for title, harmless in (("Passed over, being no statistic:", True), ("Not understood:", False)):
+        show_list(title, [unread_place(u) for u in reading.unread if u.harmless is harmless])
 
 
 def write_reading_csv(reading: Reading, findings: Findings) -> None:
@@ -213,7 +214,7 @@ def _positive(result: ReportedResult) -> bool:
 def _summary(reading: Reading) -> str:
     results = len(reading.results)
     samples = len({r.sample for r in reading.results})
-    unread = len(reading.unread)
+    unread = sum(not place.harmless for place in reading.unread)
     text = (
         f"{results} result{'' if results == 1 else 's'} read, "
         f"from {samples} sample{'' if samples == 1 else 's'}"

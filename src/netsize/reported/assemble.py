@@ -35,7 +35,8 @@ def fields_of(
     """
     if group.faults:
         item = group.faults[0]
-        raise Fault(item.fault or "", *(item.marked or (item.start, item.end)))
+        place = item.marked or (item.start, item.end)
+        raise Fault(item.fault or "", *place, harmless=item.harmless and len(group.items) == 1)
     design, design_origin = _design(tags, defaults)
     context = Context(
         group=group,

@@ -174,7 +174,8 @@ def from_means(context: Context) -> Fields:
     if not groups:
         raise Fault(
             "means need an SD and n for each of two groups: "
-            "M = 5.2, SD = 1.1, n = 20 vs M = 4.4, SD = 1.2, n = 20"
+            "M = 5.2, SD = 1.1, n = 20 vs M = 4.4, SD = 1.2, n = 20",
+            harmless=len(context.group.every("mean")) == 1,
         )
     return {
         "family": "means",

@@ -23,7 +23,8 @@ class Item:
 
     `kind` is the pattern that found it, `name` the symbol in one spelling. `arguments` are the
     numbers in its brackets (degrees of freedom), `sizes` numbers of participants. `start`, `end`
-    cut the normalised text. `fault` says why it cannot be used.
+    cut the normalised text. `fault` says why it cannot be used, `marked` which part of it is at
+    fault, `harmless` that it would be no result anyway.
     """
 
     kind: str
@@ -40,3 +41,4 @@ class Item:
     notes: tuple[str, ...] = ()
     fault: str | None = None
     marked: tuple[int, int] | None = None
+    harmless: bool = False

@@ -170,6 +170,7 @@ def _unread(entry: Any, index: int) -> Unread:
             _kind(entry["text"], str, "text"),
             _kind(entry["reason"], str, "reason"),
             _kind(entry.get("context", ""), str, "context"),
+            _kind(entry.get("harmless", False), bool, "harmless"),
         )
     except (TypeError, KeyError, ValueError, AttributeError) as error:
         raise ReadingError(

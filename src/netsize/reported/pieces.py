@@ -177,7 +177,13 @@ def _other(match: re.Match[str], text: str) -> Item | None:
         "(t, F, r, χ², z, d, η², means, counts, odds ratios, b; see netsize read --help)",
         match.start(),
         end,
+        harmless=_is_word(match[0]),
     )
+
+
+def _is_word(name: str) -> bool:
+    """Words such as "best(38)"; Q, H, minF' and the like are statistics of other kinds."""
+    return len(name) > 2 and name.isalpha() and name[1:].islower()
 
 
 PIECES: dict[str, Callable[[re.Match[str], str], Item | None]] = {

@@ -32,7 +32,7 @@ class Places:
         """The very characters of the original."""
         return self._text[span.start : span.end]
 
-    def unread(self, start: int, end: int, reason: str) -> Unread:
+    def unread(self, start: int, end: int, reason: str, *, harmless: bool = False) -> Unread:
         """A fault at normalised [start, end), with the rest of its line around it."""
         span = self.span(start, end)
         line_start = self._starts[span.line - 1]
@@ -49,6 +49,7 @@ class Places:
             text=self.cut(span),
             reason=reason,
             context=f"{before}{self._text[context_start:context_end]}{after}",
+            harmless=harmless,
         )
 
 

@@ -47,7 +47,8 @@ def read_prose(source: Source) -> tuple[list[ReportedResult], list[Unread]]:
                     against_words=bool(against),
                 )
             except Fault as fault:
-                lost.append(source.places.unread(*marked_place(group, fault), fault.reason))
+                place = marked_place(group, fault)
+                lost.append(source.places.unread(*place, fault.reason, harmless=fault.harmless))
                 continue
             if fields is not None:
                 built.append((group, fields))

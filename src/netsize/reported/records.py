@@ -165,7 +165,9 @@ class Unread:
     """A place that looks like a statistic and cannot be used, with the reason and the mend.
 
     `text` is the faulty part as printed, `context` its line with that part, cut short ("...")
-    where the line is long.
+    where the line is long. `harmless` marks what no careful person takes for a result (a quantity
+    with its unit, a function of a variable, a word with a number in brackets, the mean of one
+    group): it is listed like the others, and does not stop an analysis.
     """
 
     line: int
@@ -173,6 +175,7 @@ class Unread:
     text: str
     reason: str
     context: str = ""
+    harmless: bool = False
 
     def to_dict(self) -> dict[str, Any]:
         """Plain JSON types under the field names."""

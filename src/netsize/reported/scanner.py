@@ -55,6 +55,7 @@ def _item(kind: str, match: re.Match[str], text: str) -> Item | None:
             max(end, match.end()),
             fault=fault.reason,
             marked=(start, end),
+            harmless=fault.harmless,
         )
 
 

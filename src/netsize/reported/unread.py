@@ -24,17 +24,18 @@ def unread_place(place: Unread) -> str:
 
 
 def refuse_unread(reading: Reading) -> None:
-    """Raise ReadingError with every unread place of `reading`, if there is one."""
-    if not reading.unread:
+    """Raise ReadingError where `reading` holds unread places other than harmless ones."""
+    unread = [place for place in reading.unread if not place.harmless]
+    if not unread:
         return
-    count = len(reading.unread)
+    count = len(unread)
     what = "1 place looks" if count == 1 else f"{count} places look"
-    shown = reading.unread[:_MOST_LISTED]
+    shown = unread[:_MOST_LISTED]
     rest = f"\n  and {count - len(shown)} more" if count > len(shown) else ""
     raise ReadingError(
         f"{what} like a statistic and cannot be used:\n"
         + "\n".join("  " + unread_place(place).replace("\n", "\n      ") for place in shown)
         + rest
         + "\nMend the text, or leave these places out with --skip-unread (skip_unread=True).",
-        reading.unread,
+        unread,
     )

@@ -79,7 +79,8 @@ def _refuse_trailing(text: str, end: int, kind: str, start: int, token: str) -> 
         "unit": "the number has a unit, so it is a quantity and not a statistic",
         "arithmetic": "this reads as an equation, not as a result",
     }[what]
-    raise Fault(reason, start, follows.end())
+    quantity = what == "unit" and kind != "p" and "(" not in text[start:end]
+    raise Fault(reason, start, follows.end(), harmless=quantity)
 
 
 def _relation(signs: str, start: int, end: int) -> Relation:
