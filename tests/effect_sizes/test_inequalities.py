@@ -110,14 +110,14 @@ def test_critical_f_keeps_its_digits_at_small_levels(row):
 @pytest.mark.parametrize(
     ("settings", "named"),
     [
-        ({"alpha": 0}, "alpha"),
-        ({"alpha": math.nan}, "alpha"),
-        ({"cut_points": (0.1, 0.05)}, "cut_points"),
-        ({"cut_points": ()}, "cut_points"),
-        ({"level": 95}, "level"),
-        ({"metric": "cohen-d"}, "metric"),
-        ({"variance": "best"}, "variance"),
-        ({"correlation": 1}, "correlation"),
+        ({"alpha": 0}, "--alpha"),
+        ({"alpha": math.nan}, "--alpha"),
+        ({"cut_points": (0.1, 0.05)}, "--cut-points"),
+        ({"cut_points": ()}, "--cut-points"),
+        ({"level": 95}, "--level"),
+        ({"metric": "cohen-d"}, "--metric"),
+        ({"variance": "best"}, "--variance"),
+        ({"correlation": 1}, "--within-pair"),
     ],
 )
 def test_settings_outside_their_range_are_named(result, settings, named):

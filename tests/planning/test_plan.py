@@ -174,7 +174,7 @@ def test_the_design_follows_the_evidence(text, metric, design):
     assert plan.metric.name == metric
     assert plan.study.design.name == design
     assert plan.answer.median < plan.row("as-printed").effect
-    assert any("new study" in note for note in plan.assumptions)
+    assert any("design taken from" in note for note in plan.assumptions)
 
 
 def test_a_correlation_is_planned_and_shown_as_r():

@@ -66,7 +66,7 @@ def _settings(kind: str, number: int) -> dict[str, object]:
         "h": {"design": "two-proportions", "test": "arcsine", "metric": "h"},
         "chi": {"design": "contingency", "df1": number},
         "k": {"design": "anova", "groups": number},
-        "m": {"design": "regression", "tested_predictors": number},
+        "m": {"design": "regression", "added_terms": number},
     }[kind]
 
 

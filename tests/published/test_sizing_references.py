@@ -103,13 +103,13 @@ def test_factorial(points: dict[str, np.ndarray], df1: int, cells: int) -> None:
     np.testing.assert_allclose(ours, theirs, atol=1e-6)
 
 
-@pytest.mark.parametrize(("tested", "predictors"), [(1, 1), (3, 3), (2, 9)])
+@pytest.mark.parametrize(("tested", "all_terms"), [(1, 1), (3, 3), (2, 9)])
 def test_regression(points: dict[str, np.ndarray], tested: int, predictors: int) -> None:
     n = points["n"] + predictors
     f2 = points["strength"] ** 2 / n
     df2 = n - predictors - 1
     theirs = FTestPowerF2().power(f2, tested, df2, 0.05, ncc=n - tested - df2)
-    ours = power("regression", effect=f2, n=n, tested_predictors=tested, predictors=predictors)
+    ours = power("regression", effect=f2, n=n, added_terms=tested, all_terms=predictors)
     np.testing.assert_allclose(ours, theirs, atol=1e-6)
 
 
@@ -178,8 +178,8 @@ def test_correlation_as_a_mixture_of_t_tests(points: dict[str, np.ndarray]) -> N
     np.testing.assert_allclose(power("correlation", effect=rho, n=n), theirs, atol=1e-6)
 
 
-@pytest.mark.parametrize(("n1", "n2", "sd_ratio"), [(5, 5, 3.0), (8, 16, 0.5), (60, 30, 2.0)])
-def test_welch_by_two_dimensional_quadrature(n1: int, n2: int, sd_ratio: float) -> None:
+@pytest.mark.parametrize(("n1", "n2", "spread_ratio"), [(5, 5, 3.0), (8, 16, 0.5), (60, 30, 2.0)])
+def test_welch_by_two_dimensional_quadrature(n1: int, n2: int, spread_ratio: float) -> None:
     """Over both sample variances, given which Welch's test is a normal probability."""
     effect = 0.9
     nodes, weights = leggauss(300)
@@ -189,7 +189,7 @@ def test_welch_by_two_dimensional_quadrature(n1: int, n2: int, sd_ratio: float) 
         v = (low + high) / 2 + (high - low) / 2 * nodes
         return scale * v / (n - 1), (high - low) / 2 * weights * stats.chi2.pdf(v, n - 1)
 
-    first = 2 / (1 + sd_ratio**2)  # the mean variance is 1
+    first = 2 / (1 + spread_ratio**2)  # the mean variance is 1
     second = 2 - first
     (s1, w1), (s2, w2) = variance(n1, first), variance(n2, second)
     a, b = s1[:, None] / n1, s2 / n2
@@ -198,7 +198,9 @@ def test_welch_by_two_dimensional_quadrature(n1: int, n2: int, sd_ratio: float) 
     limit = stats.t.isf(0.025, df) * np.sqrt(a + b) / true
     chance = stats.norm.sf(limit - effect / true) + stats.norm.cdf(-limit - effect / true)
     theirs = w1 @ chance @ w2
-    ours = power("two-groups", effect=effect, n=min(n1, n2), ratio=n2 / n1, sd_ratio=sd_ratio)
+    ours = power(
+        "two-groups", effect=effect, n=min(n1, n2), ratio=n2 / n1, spread_ratio=spread_ratio
+    )
     assert float(ours) == pytest.approx(theirs, abs=1e-9)
 
 
@@ -206,7 +208,7 @@ def test_two_measurements_are_pairs() -> None:
     """F(1, n-1) = t² with f = d/2 and dz = d/√(2(1-ρ)), against statsmodels' paired test."""
     d, rho, n = np.array([0.2, 0.5, 0.9]), 0.7, np.array([10, 30, 90])
     theirs = TTestPower().power(d / np.sqrt(2 * (1 - rho)), n, 0.05)
-    ours = power("repeated", effect=d / 2, n=n, measurements=2, pair_correlation=rho)
+    ours = power("repeated", effect=d / 2, n=n, occasions=2, pair_correlation=rho)
     np.testing.assert_allclose(ours, theirs, atol=1e-8)
 
 
@@ -253,7 +255,7 @@ def test_repeated_measures_simulated(tested: str, f: float) -> None:
         effect=f,
         n=n,
         groups=groups,
-        measurements=k,
+        occasions=k,
         pair_correlation=rho,
         tested=tested,
     )

@@ -35,7 +35,7 @@ def test_without_an_effect_the_power_is_the_level() -> None:
         ("two-groups", {}),
         ("correlation", {}),
         ("anova", {"groups": 5}),
-        ("regression", {"tested_predictors": 3}),
+        ("regression", {"added_terms": 3}),
         ("contingency", {}),
         ("two-correlations", {}),
         ("two-proportions", {"test": "arcsine"}),
@@ -97,7 +97,7 @@ def test_two_groups_of_anova_and_regression_are_a_t_test() -> None:
 def test_welch_with_equal_variances_is_nearly_the_pooled_test() -> None:
     same = power("two-groups", effect=0.5, n=100)
     np.testing.assert_allclose(
-        power("two-groups", effect=0.5, n=100, sd_ratio=1.0001), same, atol=2e-4
+        power("two-groups", effect=0.5, n=100, spread_ratio=1.0001), same, atol=2e-4
     )
 
 
@@ -110,7 +110,7 @@ def test_tiny_groups(n: int) -> None:
     with pytest.raises(SettingError, match=r"--n: too few for a test.*at least 4"):
         power("correlation", effect=0.5, n=n)
     with pytest.raises(SettingError, match=r"at least 7"):
-        power("regression", effect=0.5, n=n, tested_predictors=5)
+        power("regression", effect=0.5, n=n, added_terms=5)
     with pytest.raises(SettingError, match="--n"):
         power("paired", effect=0.5, n=2, covariate_r2=0.5)
 

@@ -90,7 +90,7 @@ def test_every_modifier_changes_the_answer_and_says_so() -> None:
         "loss": (0.1, "recruited"),
         "covariate_r2": (0.4, "covariate"),
         "ratio": (2.0, "group 2 is 2 times"),
-        "sd_ratio": (2.0, "Welch"),
+        "spread_ratio": (2.0, "Welch"),
     }
     for name, (value, word) in words.items():
         changed = solve("two-groups", effect=0.5, **{name: value})
@@ -315,7 +315,7 @@ def test_conversions_by_hand() -> None:
         ({"ratio": -1.0}, "--ratio"),
         ({"cluster_correlation": 0.1}, "--cluster-correlation: give the participants per cluster"),
         ({"covariate_r2": 1.0}, "--covariate-r2"),
-        ({"covariate_r2": 0.3, "sd_ratio": 2.0}, "--covariate-r2: .* takes no covariate"),
+        ({"covariate_r2": 0.3, "spread_ratio": 2.0}, "--covariate-r2: .* takes no covariate"),
         ({"groups": 3}, "--groups: the design two-groups has no such option"),
         ({"metric": "w"}, "--metric: the design two-groups takes d, r, f, eta2"),
         ({"design": "three-groups"}, "--design: 'three-groups' is none of"),
@@ -328,7 +328,7 @@ def test_conversions_by_hand() -> None:
         ({"design": "factorial", "df1": 4, "cells": 4}, "--df1"),
         ({"design": "repeated", "tested": "both"}, "--tested"),
         ({"design": "repeated", "tested": "between"}, "--groups"),
-        ({"design": "regression", "tested_predictors": 3, "predictors": 2}, "--predictors"),
+        ({"design": "regression", "added_terms": 3, "all_terms": 2}, "--all-terms"),
         ({"design": "two-proportions", "test": "exact"}, "--test"),
         ({"design": "two-proportions", "effect": 0.6}, "--effect: 0.6 is no difference"),
         ({"design": "equivalence", "margin": 0.3, "comparison": "anova"}, "--comparison"),

@@ -94,5 +94,5 @@ def test_few_clusters_say_so():
 
 
 def test_correlation_range():
-    with pytest.raises(SettingError, match="within-sample correlation"):
+    with pytest.raises(SettingError, match="--within-sample-correlation"):
         netsize.weigh(DOUBLED, within_sample_correlation=1.5)

@@ -35,16 +35,16 @@ _OPTIONS: dict[str, tuple[type, str]] = {
     "covariate_r2": (float, "Share of error variance that covariates explain. Default 0."),
     "covariates": (int, "Number of covariates. Default 1."),
     "ratio": (float, "Size of group 2 over group 1. Default 1."),
-    "sd_ratio": (float, "SD in group 2 over group 1, Welch's test. Default 1."),
+    "spread_ratio": (float, "SD in group 2 over group 1, Welch's test. Default 1."),
     "pair_correlation": (float, "Correlation ρ within pairs or between measurements."),
     "groups": (int, "Number of groups. Default 3 (anova), 1 (repeated)."),
     "df1": (int, "Degrees of freedom tested (factorial, contingency)."),
     "cells": (int, "Cells of the whole design. Default 4."),
-    "measurements": (int, "Measurements of a participant. Default 2."),
+    "occasions": (int, "Measurements of a participant. Default 2."),
     "sphericity": (float, "Sphericity ε of the measurements. Default 1."),
     "tested": (str, "within, between or interaction. Default within."),
-    "tested_predictors": (int, "Predictors tested together. Default 1."),
-    "predictors": (int, "All predictors. Default: those tested."),
+    "added_terms": (int, "Predictors tested together. Default 1."),
+    "all_terms": (int, "All predictors. Default: those tested."),
     "other_r2": (float, "R² of the predictors not tested. Default 0."),
     "baseline": (float, "Proportion or correlation of group 1, or the fixed value."),
     "test": (str, "pooled, corrected or arcsine. Default pooled."),
@@ -70,8 +70,8 @@ def solve(*, design: str, effect: str, as_json: bool, **options: Any) -> None:
     correlation       r, z                  --effect 0.3
     anova             f, eta2, omega2       --groups 3 --effect 0.25
     factorial         f, eta2, omega2       --df1 2 --cells 6 --effect 0.25
-    repeated          f, eta2, omega2       --measurements 4 --effect 0.25
-    regression        f2, f, r2, partial-r  --tested-predictors 2 --effect 0.1
+    repeated          f, eta2, omega2       --occasions 4 --effect 0.25
+    regression        f2, f, r2, partial-r  --added-terms 2 --effect 0.1
     two-proportions   difference, h,        --baseline 0.3 --effect 0.2
                       proportion, odds-ratio, risk-ratio
     one-proportion    as two-proportions    --baseline 0.5 --effect 0.15

@@ -70,15 +70,15 @@ def checked(
 ) -> Settings:
     """`Settings` from an argument list, or SettingError naming the argument at fault."""
     if metric is not None and metric not in METRICS:
-        raise SettingError("metric", f"{metric!r} is not one of {', '.join(METRICS)}")
+        raise SettingError("--metric", f"{metric!r} is not one of {', '.join(METRICS)}")
     if not 0 < level < 1:
-        raise SettingError("level", f"{level:g} is not between 0 and 1, as 0.95 is")
+        raise SettingError("--level", f"{level:g} is not between 0 and 1, as 0.95 is")
     if variance not in ("unbiased", "large-sample"):
-        raise SettingError("variance", f"{variance!r} is neither 'unbiased' nor 'large-sample'")
+        raise SettingError("--variance", f"{variance!r} is neither 'unbiased' nor 'large-sample'")
     if correlation is not None and not -1 < correlation < 1:
-        raise SettingError("correlation", f"{correlation:g} is not between -1 and 1")
+        raise SettingError("--within-pair", f"{correlation:g} is not between -1 and 1")
     levels = (alpha,) if cut_points is None else tuple(float(c) for c in cut_points)
-    name = "alpha" if cut_points is None else "cut_points"
+    name = "--alpha" if cut_points is None else "--cut-points"
     if not levels or any(not (math.isfinite(c) and 0 < c < 1) for c in levels):
         raise SettingError(name, "significance levels must lie between 0 and 1, as 0.05 does")
     if any(a >= b for a, b in itertools.pairwise(levels)):

@@ -7,6 +7,7 @@ from typing import Any
 
 import numpy as np
 
+from netsize.numerics.arrays import Array
 from netsize.numerics.grid import GridDistribution
 from netsize.planning.goals import Sized, size_for
 from netsize.planning.settings import PlanSettings
@@ -48,7 +49,9 @@ class Answer:
     quantile : its (1 - assurance) quantile. value : the planning value, that quantile or the
         smallest effect of interest where that is larger; from_smallest tells which.
     median : of the distribution. low, high : its central interval.
-    probability_negligible : posterior probability that there is no effect worth the name.
+    probability_negligible : posterior probability that there is no effect worth the name, by the
+        averaged reading whatever the rule. share_negligible : its share in the chances below; 0
+        for rules whose distribution is not conditional on an effect.
     sized : the size for the value; not finite where the value is not positive.
     detectable : the smallest effect that a study of that size finds with the power wanted.
     chance_significant : P(the sized study ends significant in the predicted direction) over the
@@ -68,6 +71,7 @@ class Answer:
     low: float
     high: float
     probability_negligible: float
+    share_negligible: float
     sized: Sized
     detectable: float | None
     chance_significant: float | None
@@ -86,6 +90,7 @@ class Answer:
         values = self.distribution.quantile(np.array(percentiles) / 100)
         return {
             "probability_negligible": self.probability_negligible,
+            "share_negligible": self.share_negligible,
             "value": _plain(self.value),
             "quantile": _plain(self.quantile),
             "from_smallest_effect": self.from_smallest,
@@ -129,12 +134,14 @@ def answer(
     sized = size_for(study, settings, inward(np.array([value])))[0]
     positive = 1.0 - float(distribution.cdf(0.0))
 
-    def chance(x: np.ndarray[Any, Any]) -> np.ndarray[Any, Any]:
-        effect = np.where(np.isfinite(x), x, 0.0)  # an escaped end counts as no effect
-        return study.predicted(sized.units, inward(effect))
+    def chance(x: Array) -> Array:
+        # mass that escapes below counts as no effect, above as one that cannot be missed
+        known = study.predicted(sized.units, inward(np.where(np.isfinite(x), x, 0.0)))
+        return np.where(x == np.inf, 1.0, known)
 
     no_effect = float(study.predicted(max(sized.units, study.first), np.array(0.0)))
-    sure = probability_negligible
+    sure = probability_negligible if settings.rule == "averaged" else 0.0
+    tail = (1 - settings.level) / 2
     return Answer(
         distribution=distribution,
         origin=origin,
@@ -143,9 +150,10 @@ def answer(
         value=value,
         from_smallest=from_smallest,
         median=float(distribution.quantile(0.5)),
-        low=float(distribution.quantile(0.025)),
-        high=float(distribution.quantile(0.975)),
-        probability_negligible=sure,
+        low=float(distribution.quantile(tail)),
+        high=float(distribution.quantile(1 - tail)),
+        probability_negligible=probability_negligible,
+        share_negligible=sure,
         sized=sized,
         detectable=_detectable(study, sized, settings, scale),
         chance_significant=(

@@ -100,7 +100,7 @@ def habits(literature: Literature, answer: Answer, study: Study, scale: str) -> 
         ),
         (
             "customary",
-            f"{_CUSTOM} per {study.design.group_word}, a common habit",
+            f"{_customary(study)}, a common habit",
             max(_CUSTOM, study.first),
         ),
     ]
@@ -121,6 +121,11 @@ def habits(literature: Literature, answer: Answer, study: Study, scale: str) -> 
             )
         )
     return tuple(out)
+
+
+def _customary(study: Study) -> str:
+    alone = study.groups(np.array(1.0)).size == 1
+    return f"{_CUSTOM} participants" if alone else f"{_CUSTOM} per {study.design.group_word}"
 
 
 def _finite(value: Array) -> float | None:

@@ -6,6 +6,7 @@ Everything on the shown scale, as plain numbers that a page can hold.
 from __future__ import annotations
 
 from dataclasses import dataclass, replace
+from typing import Any
 
 import numpy as np
 
@@ -14,6 +15,7 @@ from netsize.effect_sizes.curves import band_probabilities
 from netsize.numerics.arrays import Array
 from netsize.planning.goals import power_at, size_for
 from netsize.planning.plan import Plan
+from netsize.planning.settings import PlanSettings
 from netsize.planning.study import effect_on
 
 __all__ = [
@@ -25,6 +27,7 @@ __all__ = [
     "expected_p",
     "power_over_n",
     "size_over_effect",
+    "with_goal",
 ]
 
 _POINTS = 61
@@ -70,7 +73,8 @@ class PowerOverN:
 
     low, high : at the 10th and 90th percentile of the planning distribution, at_median at its
     median, at_value at the planning value (None where that is not positive). overall : chance of a
-    significant result as predicted over the whole distribution, negligible effects included.
+    significant result as predicted over the whole distribution, with negligible effects where the
+    rule has them.
     """
 
     n_total: tuple[int, ...]
@@ -93,6 +97,18 @@ class ExpectedP:
     observed: tuple[int, ...]
     expected: tuple[float, ...]
     no_effect: tuple[float, ...]
+
+
+def with_goal(settings: PlanSettings, **choices: Any) -> PlanSettings:
+    """The settings for another goal: what serves the present one only is dropped."""
+    dropped: dict[str, Any] = {
+        "half_width": None,
+        "assured": False,
+        "at_most": None,
+        "cost_per": None,
+        "fixed_cost": 0.0,
+    }
+    return replace(settings, **(dropped | choices))
 
 
 def density(plan: Plan) -> Density:
@@ -119,7 +135,7 @@ def size_over_effect(plan: Plan) -> SizeOverEffect:
     """n for the goal over the effects of the table; for a budget, n for the power wanted."""
     settings = plan.settings
     if settings.goal == "budget":
-        settings = replace(settings, goal="power")
+        settings = with_goal(settings, goal="power")
     marked = [row.limit for row in plan.rows if row.limit is not None and row.limit > 0]
     high = 1.1 * max(marked, default=1.0)
     low = max(0.8 * min(marked, default=0.1), high / 1000)
@@ -168,13 +184,14 @@ def power_over_n(plan: Plan) -> PowerOverN:
 
 
 def overall_chance(plan: Plan, units: Array) -> Array:
-    """P(significant as predicted) of studies of `units` (U,), negligible effects included."""
+    """P(significant as predicted) of studies of `units` (U,) over the planning distribution."""
     study, answer = plan.study, plan.answer
     x = answer.distribution.quantile((np.arange(_NODES) + 0.5) / _NODES)
     effect = effect_on(study, plan.metric, np.where(np.isfinite(x), x, 0.0))
-    given = study.predicted(np.asarray(units)[:, None], effect).mean(axis=1)
+    chance = study.predicted(np.asarray(units)[:, None], effect)
+    given = np.where(x == np.inf, 1.0, chance).mean(axis=1)
     nothing = study.predicted(np.asarray(units), np.zeros(np.shape(units)))
-    sure = answer.probability_negligible
+    sure = answer.share_negligible
     return np.asarray(sure * nothing + (1 - sure) * given)
 
 

@@ -29,8 +29,6 @@ if TYPE_CHECKING:
 
 __all__ = ["Plan", "answer_again", "plan"]
 
-_POINTS = 61  # of the power curve that figures draw
-
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Plan:
@@ -171,6 +169,7 @@ def plan(
     table, left_out = table_of(
         source, settings, metric=metric_for(settings), skip_unread=skip_unread
     )
+    settings.on_scale(table.metric)
     study, study_notes = study_for(table, settings)
     literature = gather(table, settings, left_out=left_out)
     scale = METRIC_OF[study.design.name][1]

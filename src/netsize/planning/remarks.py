@@ -32,16 +32,18 @@ def assumptions(
     p = literature.averaged.priors
     cuts = ", ".join(f"{c:g}" for c in settings.cut_points)
     general = [
+        _new_study(study, settings),
         *_single(literature),
         *literature.table.notes,
         *study_notes,
         *study.design.assumptions(),
-        f"results were selected for printing by p at two-sided {cuts} in the predicted direction; "
-        "set with --cut-points",
-        f"priors: mean effect normal with SD {p.effect_scale:g}, between-study SD half-normal with "
-        f"scale {p.heterogeneity_scale:g} on the pooling metric, chance of printing a result below "
-        f"the first band log-uniform from {p.printing_floor:g} to 1, negligible effect with "
-        f"probability {p.negligible:g}",
+        f"results were selected for printing by p at two-sided {cuts} in the predicted direction, "
+        "which is what counts as significant here; set with --cut-points",
+        f"priors: mean effect normal with SD {p.effect_scale:g} (--effect-scale), between-study SD "
+        f"half-normal with scale {p.heterogeneity_scale:g} (--heterogeneity-scale) on the pooling "
+        "metric, chance of printing a result below the first band log-uniform from "
+        f"{p.printing_floor:g} to 1 (--printing-floor), negligible effect with probability "
+        f"{p.negligible:g} (--negligible)",
     ]
     if shared:
         general.append(
@@ -49,6 +51,34 @@ def assumptions(
             "--within-sample-correlation"
         )
     return tuple(general)
+
+
+def _new_study(study: Study, settings: PlanSettings) -> str:
+    """Everything about the new study that n depends on, in a line."""
+    m = study.modifiers
+    sides = (
+        "" if not study.design.law.directional else f", {'two' if m.sides == 2 else 'one'}-sided"
+    )
+    parts = [f"{study.design.title}, α = {m.alpha:g}{sides}"]
+    if m.tests > 1:
+        parts.append(f"{m.tests} tests sharing α")
+    if settings.goal == "precision":
+        parts.append(f"half-width {settings.half_width:g}")
+    else:
+        parts.append(f"power {settings.power:g}")
+    parts.append(f"assurance {settings.assurance:g}")
+    if m.cluster_size > 1:
+        parts.append(f"clusters of {m.cluster_size} correlated {m.cluster_correlation:g}")
+    if m.covariate_r2:
+        parts.append(f"covariates explaining {m.covariate_r2:g}")
+    if m.loss:
+        parts.append(f"{m.loss:.0%} lost after recruitment")
+    given = [
+        f"{name} {value:g}"
+        for name, value in settings.design_options.items()
+        if name in ("ratio", "spread_ratio", "groups", "cells", "df1")
+    ]
+    return "new study: " + ", ".join(parts + given)
 
 
 def _single(literature: Literature) -> list[str]:
@@ -101,7 +131,7 @@ def warnings(
     if samples == 1 and k > 1:
         out.append(
             "all results come from one sample: heterogeneity between studies cannot be seen, and "
-            "the answer rests on the prior for it"
+            "the answer rests on the prior for it; see how it moves with --sensitivity"
         )
     elif samples < _FEW:
         out.append(

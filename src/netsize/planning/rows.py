@@ -10,10 +10,12 @@ import numpy as np
 from scipy.special import stdtrit
 
 from netsize.effect_sizes.metrics import Metric
+from netsize.effect_sizes.records import EffectSize
 from netsize.numerics.arrays import Array
 from netsize.planning.answer import Answer
 from netsize.planning.evidence import Literature
 from netsize.planning.goals import Sized, power_at, size_for
+from netsize.planning.rules import exact_confidence
 from netsize.planning.settings import PlanSettings
 from netsize.sizing.aftermath import aftermath
 from netsize.sizing.precision import expected_half_width, has_interval
@@ -170,12 +172,12 @@ def _printed(literature: Literature, settings: PlanSettings) -> list[_Reading]:
     shown = literature.table.metric.shown
     own = [float(x) for x in shown(np.array([largest.low, largest.high]))]
     mean = float(printed.mean())
-    low, high, cautious = own[0], own[1], None
+    of_largest = _own_limit(rows[int(printed.argmax())], settings)
+    low: float | None = own[0]
+    high: float | None = own[1]
+    cautious: float | None = of_largest
     if printed.size > 1:
-        se = float(printed.std(ddof=1)) / np.sqrt(printed.size)
-        t = float(stdtrit(printed.size - 1, (1 + settings.level) / 2))
-        low, high = mean - t * se, mean + t * se
-        cautious = mean + se * float(stdtrit(printed.size - 1, 1 - settings.assurance))
+        low, high, cautious = _of_mean(printed, literature.table.metric, settings)
     return [
         _Reading(
             key="as-printed",
@@ -191,13 +193,44 @@ def _printed(literature: Literature, settings: PlanSettings) -> list[_Reading]:
             effect=float(printed.max()),
             low=own[0],
             high=own[1],
+            cautious=of_largest,
             note=largest.label,
         ),
     ]
 
 
+def _of_mean(
+    printed: Array, metric: Metric, settings: PlanSettings
+) -> tuple[float | None, float | None, float | None]:
+    """The t interval of the mean of printed effects and its cautious limit, on the shown scale.
+
+    Taken on the metric around the mean that is shown, so that it cannot leave the scale; nothing
+    where the effects are all the same.
+    """
+    on_metric = metric.pooled(printed)
+    se = float(on_metric.std(ddof=1)) / np.sqrt(printed.size)
+    if not se > 0:
+        return None, None, None
+    tails = [(1 - settings.level) / 2, (1 + settings.level) / 2, 1 - settings.assurance]
+    middle = metric.pooled(np.array([printed.mean()]))[0]
+    limits = middle + se * np.array([float(stdtrit(printed.size - 1, p)) for p in tails])
+    low, high, cautious = _on_scale(limits, metric)
+    return low, high, cautious
+
+
+def _own_limit(row: EffectSize, settings: PlanSettings) -> float:
+    """The exact lower limit of one result, uncorrected, at the assurance asked."""
+    limit = exact_confidence(row).quantile(1 - settings.assurance)
+    return float(row.metric.shown(np.array([limit]))[0])
+
+
+def _on_scale(values: Array, metric: Metric) -> list[float]:
+    """Values of the metric on the shown scale; an unsigned effect has none below 0."""
+    return [float(v) for v in metric.shown(values if metric.signed else np.maximum(values, 0.0))]
+
+
 def _pooled(literature: Literature, settings: PlanSettings) -> list[_Reading]:
-    pooled, shown = literature.pooled, literature.table.metric.shown
+    pooled = literature.pooled
     if pooled is None:
         return [
             _Reading(
@@ -209,8 +242,8 @@ def _pooled(literature: Literature, settings: PlanSettings) -> list[_Reading]:
         ]
     df = pooled.df if np.isfinite(pooled.df) else 1e9
     cautious = pooled.mean + pooled.se * float(stdtrit(df, 1 - settings.assurance))
-    values = shown(np.array([pooled.mean, pooled.low, pooled.high, cautious]))
-    effect, low, high, cautious = (float(v) for v in values)
+    values = np.array([pooled.mean, pooled.low, pooled.high, cautious])
+    effect, low, high, cautious = _on_scale(values, literature.table.metric)
     return [
         _Reading(
             key="pooled",

@@ -17,11 +17,12 @@ from netsize.errors import EvidenceError
 from netsize.numerics.grid import GridDistribution
 from netsize.planning.evidence import Literature
 from netsize.planning.settings import PlanSettings
+from netsize.synthesis.precise import centre, spread
 from netsize.synthesis.selection_single import conditional_bound
 
-__all__ = ["planning_distribution"]
+__all__ = ["exact_confidence", "planning_distribution"]
 
-_CELLS = 801
+_CELLS = 2401
 
 
 def planning_distribution(
@@ -58,17 +59,23 @@ def _of_pooled(literature: Literature) -> GridDistribution:
         raise EvidenceError(
             "the rule pooled-limit needs results with a point estimate; inequalities have none"
         )
-    first = literature.rows[0].evidence
-    if len(literature.rows) == 1 and first.low == first.high:
-        reach = 12 * pooled.se
-        low = pooled.mean - reach if literature.table.metric.signed else 0.0
-        points = np.linspace(low, pooled.mean + reach, _CELLS)
-        beyond = replace(first, cuts=(first.low,))
-        return GridDistribution.from_cdf(points, band_probabilities([beyond], points)[0, 0])
+    first = literature.rows[0]
+    if len(literature.rows) == 1 and first.printed is not None:
+        return exact_confidence(first)
     reach = 12 * pooled.se
     points = np.linspace(pooled.mean - reach, pooled.mean + reach, _CELLS)
     df = pooled.df if np.isfinite(pooled.df) else 1e9
     return GridDistribution.from_cdf(points, stdtr(df, (points - pooled.mean) / pooled.se))
+
+
+def exact_confidence(row: EffectSize) -> GridDistribution:
+    """The exact confidence distribution of one result with a value, C(θ) = P(X > x | θ)."""
+    e = row.evidence
+    reach = 12 * spread(e)
+    low = centre(e) - reach if row.metric.signed else 0.0
+    points = np.linspace(low, centre(e) + reach, _CELLS)
+    beyond = replace(e, cuts=(e.low,))
+    return GridDistribution.from_cdf(points, band_probabilities([beyond], points)[0, 0])
 
 
 def _largest_significant(literature: Literature) -> EffectSize:

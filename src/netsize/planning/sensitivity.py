@@ -3,9 +3,11 @@
 from __future__ import annotations
 
 from collections.abc import Iterator
+from contextlib import suppress
 from dataclasses import dataclass, replace
 from typing import Any
 
+from netsize.errors import EvidenceError
 from netsize.planning.answer import Answer
 from netsize.planning.goals import Sized
 from netsize.planning.plan import Plan, answer_again
@@ -55,15 +57,19 @@ def sensitivity(plan: Plan) -> tuple[Variation, ...]:
     results = [row.result for row in plan.literature.rows]
     for group, label, changed in _changes(plan):
         settings = replace(plan.settings, **changed)
-        answered = answer_again(results, settings=settings, study=plan.study, metric=plan.metric)
-        out.append(_variation(group, label, answered))
+        with suppress(EvidenceError):
+            answered = answer_again(
+                results, settings=settings, study=plan.study, metric=plan.metric
+            )
+            out.append(_variation(group, label, answered))
     return tuple(out)
 
 
 def leave_one_out(plan: Plan) -> tuple[Variation, ...]:
     """The answer without each sample in turn, the 40 largest where there are more.
 
-    Empty where there is only one sample, or where the rule does not look at the evidence.
+    Empty where there is only one sample, or where the rule does not look at the evidence; a sample
+    without which nothing is left to plan from is passed over.
     """
     samples = plan.literature.samples
     if len(samples) < 2 or plan.settings.rule == "fixed":
@@ -72,10 +78,11 @@ def leave_one_out(plan: Plan) -> tuple[Variation, ...]:
     out = []
     for left in (name for name in samples if name in largest):
         results = [row.result for row in plan.literature.rows if row.sample != left]
-        answered = answer_again(
-            results, settings=plan.settings, study=plan.study, metric=plan.metric
-        )
-        out.append(_variation("evidence", f"without {left}", answered))
+        with suppress(EvidenceError):
+            answered = answer_again(
+                results, settings=plan.settings, study=plan.study, metric=plan.metric
+            )
+            out.append(_variation("evidence", f"without {left}", answered))
     return tuple(out)
 
 

@@ -7,7 +7,7 @@ from typing import Any, Literal, TypeAlias, get_args
 
 from netsize.effect_sizes.metrics import Metric
 from netsize.errors import SettingError
-from netsize.sizing.checks import between
+from netsize.sizing.checks import between, option
 from netsize.synthesis.heterogeneity import HETEROGENEITY, Heterogeneity
 from netsize.synthesis.random_effects import INTERVALS, IntervalRule
 from netsize.synthesis.selection import Priors
@@ -20,6 +20,9 @@ Goal: TypeAlias = Literal["power", "assurance", "precision", "budget"]
 RULES: tuple[str, ...] = get_args(Rule)
 TARGETS: tuple[str, ...] = get_args(Target)
 GOALS: tuple[str, ...] = get_args(Goal)
+
+_SMALLEST, _LARGEST = 1e-4, 20.0  # effects that a plan takes
+_MOST_CUTS = 3  # each adds a dimension to the integration
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -82,9 +85,17 @@ class PlanSettings:
             between(name, getattr(self, name), 0, 1)
         between("negligible", self.negligible, 0, 1, ends="[)")
         between("within_sample_correlation", self.within_sample_correlation, 0, 1, ends="[]")
-        for name in ("smallest_effect", "planning_effect", "half_width", "at_most", "cost_per"):
+        for name in ("smallest_effect", "planning_effect", "half_width"):
             if getattr(self, name) is not None:
-                between(name, getattr(self, name), 0, float("inf"))
+                between(name, getattr(self, name), _SMALLEST, _LARGEST, ends="[]")
+        for name in ("at_most", "cost_per"):
+            if getattr(self, name) is not None:
+                between(name, getattr(self, name), 0, 1e12)
+        if not 1 <= len(self.cut_points) <= _MOST_CUTS:
+            raise SettingError(
+                "--cut-points", f"give one to {_MOST_CUTS} levels, not {len(self.cut_points)}"
+            )
+        self._check_goal()
         for name in ("effect_scale", "heterogeneity_scale"):
             if getattr(self, name) is not None:
                 between(name, getattr(self, name), 0.001, 100)
@@ -106,10 +117,31 @@ class PlanSettings:
             raise SettingError("--planning-effect", "the rule fixed needs the effect to plan for")
         if self.rule != "fixed" and self.planning_effect is not None:
             raise SettingError("--planning-effect", "it serves --rule fixed only")
+
+    def _check_goal(self) -> None:
+        """Options of one goal only; one given in vain is a mistake to tell, not to pass over."""
+        owners = {
+            "half_width": "precision",
+            "assured": "precision",
+            "at_most": "budget",
+            "cost_per": "budget",
+        }
+        for name, goal in owners.items():
+            if getattr(self, name) and self.goal != goal:
+                raise SettingError(option(name), f"it serves --goal {goal} only")
         if self.goal == "precision" and self.half_width is None:
             raise SettingError("--half-width", "the goal precision needs the half-width wanted")
         if self.goal == "budget" and self.at_most is None:
             raise SettingError("--at-most", "the goal budget needs the most that can be spent")
+        if self.fixed_cost and self.cost_per is None:
+            raise SettingError("--fixed-cost", "it needs the cost of a participant, --cost-per")
+
+    def on_scale(self, metric: Metric) -> None:
+        """SettingError where an effect given does not exist on the scale of the metric."""
+        for name in ("smallest_effect", "planning_effect"):
+            value = getattr(self, name)
+            if value is not None and metric.name == "fisher-z" and value >= 1:
+                raise SettingError(option(name), f"{value:g} is no correlation; it must be below 1")
 
     def priors(self, metric: Metric) -> Priors:
         """The priors on a metric, defaults filled in."""

@@ -72,13 +72,13 @@ def metric_for(settings: PlanSettings) -> str | None:
 def _matching(table: EffectTable) -> tuple[str, tuple[str, ...], dict[str, int]]:
     metric = table.metric.name
     if metric == "mean-difference":
-        return "two-groups", ("new study: two equal groups, as the evidence; set --design",), {}
+        return "two-groups", ("design taken from the evidence: two equal groups; set --design",), {}
     if metric == "fisher-z":
-        return "correlation", ("new study: one correlation, as the evidence; set --design",), {}
+        return "correlation", ("design taken from the evidence: one correlation; set --design",), {}
     if metric == "difference-score":
         kinds = Counter(row.result.design for row in table.rows)
         name = "one-sample" if kinds["one-sample"] > kinds["paired"] else "paired"
-        return name, (f"new study: {name}, as most of the evidence; set --design",), {}
+        return name, (f"design taken from most of the evidence: {name}; set --design",), {}
     if metric == "cohen-f":
         return _matching_f(table)
     raise EvidenceError(
@@ -98,10 +98,10 @@ def _matching_f(table: EffectTable) -> tuple[str, tuple[str, ...], dict[str, int
     kernel, df1 = kinds.pop()
     if kernel == "chi2":
         note = (
-            f"new study: a contingency table with {df1:g} degrees of freedom, as the evidence, its "
+            f"design taken from the evidence: a contingency table with {df1:g} degrees of freedom, its "
             "Cohen's w shown as f (both have noncentrality f² times participants); set --design"
         )
         return "contingency", (note,), {"df1": int(df1)}
     groups = int(df1) + 1
-    note = f"new study: one-way, {groups} equal groups, as the evidence; set --design and --groups"
+    note = f"design taken from the evidence: {groups} equal groups; set --design and --groups"
     return "anova", (note,), {"groups": groups}

@@ -39,8 +39,8 @@ def effect(value: float | None) -> str:
 
 
 def interval(low: float | None, high: float | None) -> str:
-    """Two bounds in brackets."""
-    if low is None or high is None:
+    """Two bounds in brackets; a bound that does not exist is a dash."""
+    if low is None and high is None:
         return MISSING
     return f"[{effect(low)}, {effect(high)}]"
 
@@ -109,11 +109,14 @@ def bayes_factor(log_value: float) -> str:
     return f"{value:,.0f}" if value >= 99.5 else f"{value:.2g}"
 
 
-def ordinal(number: int) -> str:
-    """20 → "20th"."""
+def ordinal(value: float) -> str:
+    """20 → "20th"; fractions keep their digits: 2.5 → "2.5th"."""
+    number = round(value, 6)
+    text = f"{number:g}"
     endings = {1: "st", 2: "nd", 3: "rd"}
-    ending = "th" if number % 100 in (11, 12, 13) else endings.get(number % 10, "th")
-    return f"{number}{ending}"
+    whole = int(number)
+    plain = number != whole or whole % 100 in (11, 12, 13)
+    return text + ("th" if plain else endings.get(whole % 10, "th"))
 
 
 def tick(value: float) -> str:

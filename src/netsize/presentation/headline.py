@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import math
+
 from netsize.planning.plan import Plan
 from netsize.presentation.format import count, counts, effect, ordinal, percent
 
@@ -75,17 +77,23 @@ def _as_printed(plan: Plan) -> str:
 
 
 def _no_finite_size(plan: Plan) -> str:
-    answer, symbol = plan.answer, plan.metric.symbol
-    text = (
-        f"No finite sample size reaches {percent(plan.settings.power)} power with "
-        f"{percent(answer.assurance)} assurance: the {_percentile(plan)} of the planning "
-        f"distribution is {symbol} = {effect(answer.quantile)}, not above zero."
-    )
-    if answer.alternatives:
-        first = answer.alternatives[0]
+    answer = plan.answer
+    wanted = f"{percent(plan.settings.power)} power with {percent(answer.assurance)} assurance"
+    what = value_in_words(plan)
+    if answer.value == -math.inf:
+        text = f"No finite sample size reaches {wanted}: {what} has no lower limit."
+    elif answer.value <= 0:
+        text = f"No finite sample size reaches {wanted}: {what} is {_value(plan)}, not above zero."
+    else:
+        text = (
+            f"No sample size within reach gives {wanted}: {what} is {_value(plan)}, so small that "
+            "more than a hundred million participants a group would be needed."
+        )
+    lower = [a for a in answer.alternatives if a.assurance != answer.assurance]
+    if lower:
         text += (
             f" A finite size exists below {percent(answer.highest_assurance)} assurance; with "
-            f"{first.what} it is {count(first.sized.n_total)} participants."
+            f"{lower[0].what} it is {count(lower[0].sized.n_total)} participants."
         )
     return text
 
@@ -95,7 +103,10 @@ def value_in_words(plan: Plan) -> str:
     if plan.answer.from_smallest:
         return "the smallest effect of interest"
     return {
-        "averaged": f"the {_percentile(plan)} of what the evidence supports net of selection",
+        "averaged": (
+            f"the {_percentile(plan)} of what the evidence supports, net of selection and given "
+            "an effect"
+        ),
         "profile": f"the {_percentile(plan)} of what the evidence supports net of selection",
         "pooled-limit": f"the {_percentile(plan)} of the pooled mean, not corrected for selection",
         "single-study": (
@@ -106,7 +117,7 @@ def value_in_words(plan: Plan) -> str:
 
 
 def _percentile(plan: Plan) -> str:
-    return f"{ordinal(round(100 * (1 - plan.answer.assurance)))} percentile"
+    return f"{ordinal(100 * (1 - plan.answer.assurance))} percentile"
 
 
 def _value(plan: Plan) -> str:

@@ -18,6 +18,7 @@ from netsize.presentation.format import (
     interval,
     percent,
     probability,
+    stated,
 )
 from netsize.presentation.headline import headline
 from netsize.presentation.terminal import Column, show_list, show_table, show_text
@@ -41,6 +42,7 @@ def show_plan(plan: Plan) -> None:
         [
             ("reading of the evidence", "left"),
             (symbol, "right"),
+            *_limit_column(plan),
             (f"{plan.settings.level:.0%} interval", "right"),
             (f"n per {plan.study.design.group_word}", "right"),
             ("n total", "right"),
@@ -51,8 +53,9 @@ def show_plan(plan: Plan) -> None:
             (
                 row.label + (f" ({row.note})" if row.note else ""),
                 effect(row.effect),
+                *([effect(row.limit)] if plan.settings.goal == "assurance" else []),
                 interval(row.low, row.high),
-                counts(row.sized.n_per_group) if row.sized.n_total else _no_size(row.effect),
+                counts(row.sized.n_per_group) if row.sized.n_total else _no_size(row.limit),
                 count(row.sized.n_total),
                 *_extra_cells(plan, row),
                 probability(row.power_of_naive_n),
@@ -102,6 +105,10 @@ def show_variations(plan: Plan, variations: Sequence[Variation]) -> None:
     )
 
 
+def _limit_column(plan: Plan) -> list[Column]:
+    return [("planned for", "right")] if plan.settings.goal == "assurance" else []
+
+
 def _extra_columns(plan: Plan) -> list[Column]:
     if plan.settings.goal == "precision":
         return [("power", "right")]
@@ -135,15 +142,16 @@ def _no_size(value: float | None) -> str:
 
 def _chances(plan: Plan) -> list[str]:
     answer = plan.answer
+    given = "Given an effect, " if plan.settings.rule == "averaged" else "Planning distribution: "
     out = [
-        f"P(negligible effect) = {probability(answer.probability_negligible)}. Given an effect, "
-        f"{answer.origin}: median {effect(answer.median)}, central 95% "
+        f"P(negligible effect) {stated(answer.probability_negligible)}. {given}"
+        f"{answer.origin}: median {effect(answer.median)}, central {percent(plan.settings.level)} "
         f"{interval(answer.low, answer.high)}."
     ]
     if answer.chance_significant is not None:
         out.append(
-            f"Chance that the sized study ends significant as predicted, negligible effects "
-            f"included: {probability(answer.chance_significant)}; no study, however large, exceeds "
+            f"Chance that the sized study ends significant as predicted{_included(plan)}: "
+            f"{probability(answer.chance_significant)}; no study, however large, exceeds "
             f"{probability(answer.ceiling)}."
         )
     else:
@@ -153,6 +161,10 @@ def _chances(plan: Plan) -> list[str]:
         )
     out.append(_selection(plan))
     return out
+
+
+def _included(plan: Plan) -> str:
+    return ", negligible effects included" if plan.settings.rule == "averaged" else ""
 
 
 def _selection(plan: Plan) -> str:

@@ -53,7 +53,9 @@ class Settings:
             ("dependence", self.dependence, DEPENDENCE),
         ):
             if value not in known:
-                raise SettingError(name, f"{value!r} is not one of {', '.join(known)}; choose one")
+                raise SettingError(
+                    f"--{name}", f"{value!r} is not one of {', '.join(known)}; choose one"
+                )
 
 
 @dataclass(frozen=True, slots=True)
@@ -144,7 +146,7 @@ def _keys(names: str | Sequence[str]) -> tuple[str, ...]:
     for name in asked:
         if name not in CORRECTIONS:
             raise SettingError(
-                "corrections",
+                "--corrections",
                 f"{name!r} is not one of {', '.join(CORRECTIONS)}; name some of them, or all",
             )
     return tuple(key for key in CORRECTIONS if key in asked)

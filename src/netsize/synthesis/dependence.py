@@ -58,7 +58,7 @@ def composite_variances(variances: Array, codes: IntArray, *, correlation: float
     """Variance of the mean of each sample's results; `correlation` ρ in [0, 1]."""
     if not 0 <= correlation <= 1:
         raise SettingError(
-            "within-sample correlation", f"{correlation:g} is not between 0 and 1; try 0.5"
+            "--within-sample-correlation", f"{correlation:g} is not between 0 and 1; try 0.5"
         )
     number = np.bincount(codes)
     apart = np.bincount(codes, weights=variances)

@@ -63,7 +63,7 @@ def tau_squared(
     """
     if method not in _METHODS:
         raise SettingError(
-            "heterogeneity", f"{method!r} is not one of {', '.join(HETEROGENEITY)}; choose one"
+            "--heterogeneity", f"{method!r} is not one of {', '.join(HETEROGENEITY)}; choose one"
         )
     data = guarded(estimates, variances, mask)
     with np.errstate(all="ignore"):

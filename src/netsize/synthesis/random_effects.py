@@ -203,10 +203,10 @@ def check(interval: str, level: float) -> None:
     """Raise SettingError for an unknown interval rule or a level outside (0, 1)."""
     if interval not in INTERVALS:
         raise SettingError(
-            "interval", f"{interval!r} is not one of {', '.join(INTERVALS)}; choose one"
+            "--interval", f"{interval!r} is not one of {', '.join(INTERVALS)}; choose one"
         )
     if not 0 < level < 1:
-        raise SettingError("level", f"{level:g} is not between 0 and 1; try 0.95")
+        raise SettingError("--level", f"{level:g} is not between 0 and 1; try 0.95")
 
 
 def _reason(used: int, converged: bool) -> str:

@@ -106,7 +106,7 @@ def check_cuts(cuts: Sequence[float]) -> tuple[float, ...]:
     ordered = tuple(sorted(float(c) for c in cuts))
     if not ordered or len(set(ordered)) < len(ordered) or not all(0 < c < 1 for c in ordered):
         raise SettingError(
-            "steps", f"{list(cuts)} are not distinct one-sided p-values in (0, 1); try 0.025"
+            "--steps", f"{list(cuts)} are not distinct one-sided p-values in (0, 1); try 0.025"
         )
     return ordered
 

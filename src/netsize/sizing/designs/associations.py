@@ -116,7 +116,7 @@ class TwoCorrelations(Design):
 class Regression(Design):
     """What a set of predictors adds to a linear regression, F test (Cohen 1988, ch. 9).
 
-    tested : predictors in the set. predictors : all of them, the set included. other_r2 : R² of
+    added_terms : predictors in the set. all_terms : all of them, the set included. other_r2 : R² of
     the remaining predictors, needed when the effect is given as the increment of R². Predictors
     are taken as fixed: λ = f²·N.
     """
@@ -126,19 +126,19 @@ class Regression(Design):
     group_word: ClassVar[str] = "sample"
     degree: ClassVar[int] = 2
 
-    tested_predictors: int = 1
-    predictors: int | None = None
+    added_terms: int = 1
+    all_terms: int | None = None
     other_r2: float = 0.0
 
     def __post_init__(self) -> None:
-        whole("tested_predictors", self.tested_predictors, 1, 10_000)
+        whole("added_terms", self.added_terms, 1, 10_000)
         between("other_r2", self.other_r2, 0, 1, ends="[)")
-        if self.predictors is not None:
-            whole("predictors", self.predictors, 1, 100_000)
-            if self.predictors < self.tested_predictors:
+        if self.all_terms is not None:
+            whole("all_terms", self.all_terms, 1, 100_000)
+            if self.all_terms < self.added_terms:
                 raise SettingError(
-                    "--predictors",
-                    f"{self.predictors} in all cannot hold {self.tested_predictors} tested ones",
+                    "--all-terms",
+                    f"{self.all_terms} in all cannot hold {self.added_terms} tested ones",
                 )
 
     @property
@@ -162,7 +162,7 @@ class Regression(Design):
                 f"{self.other_r2:g}",
             ),
         ]
-        if self.tested_predictors == 1:
+        if self.added_terms == 1:
             metrics.append(
                 EffectMetric(
                     "partial-r",
@@ -178,7 +178,7 @@ class Regression(Design):
 
     @property
     def _all(self) -> int:
-        return self.tested_predictors if self.predictors is None else self.predictors
+        return self.added_terms if self.all_terms is None else self.all_terms
 
     def sizes(self, n: Array) -> Array:
         return np.asarray(n)[None]
@@ -187,11 +187,11 @@ class Regression(Design):
         return np.asarray(np.sqrt(effect * sizes[0]))
 
     def parameters(self, sizes: Array, effect: Array) -> Parameters:
-        return np.asarray(float(self.tested_predictors)), sizes[0] - self._all - 1
+        return np.asarray(float(self.added_terms)), sizes[0] - self._all - 1
 
     def assumptions(self) -> tuple[str, ...]:
         return (
-            f"{self.tested_predictors} of {self._all} predictors tested, predictors taken as "
+            f"{self.added_terms} of {self._all} predictors tested, predictors taken as "
             "fixed, errors normal with one variance",
         )
 

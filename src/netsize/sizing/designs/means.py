@@ -28,7 +28,7 @@ class TwoGroups(Design):
 
     ratio : size of group 2 over group 1. The smaller group has a whole number n of participants,
         the larger the next whole number at or above n times the ratio (or its inverse).
-    sd_ratio : SD in group 2 over group 1; 1 means equal variances and the pooled test. Otherwise
+    spread_ratio : SD in group 2 over group 1; 1 means equal variances and the pooled test. Otherwise
         d is in units of the root mean of the two variances (Cohen 1988, eq. 2.3.2).
     """
 
@@ -36,15 +36,15 @@ class TwoGroups(Design):
     title: ClassVar[str] = "two independent groups, t test"
 
     ratio: float = 1.0
-    sd_ratio: float = 1.0
+    spread_ratio: float = 1.0
 
     def __post_init__(self) -> None:
         between("ratio", self.ratio, 0.001, 1000, ends="[]")
-        between("sd_ratio", self.sd_ratio, 0.01, 100, ends="[]")
+        between("spread_ratio", self.spread_ratio, 0.01, 100, ends="[]")
 
     @property
     def law(self) -> Law:
-        return T if self.sd_ratio == 1 else WELCH
+        return T if self.spread_ratio == 1 else WELCH
 
     @property
     def metrics(self) -> tuple[EffectMetric, ...]:
@@ -77,7 +77,7 @@ class TwoGroups(Design):
         return np.stack([n, larger] if self.ratio >= 1 else [larger, n])
 
     def _variances(self) -> tuple[float, float]:
-        first = 2 / (1 + self.sd_ratio**2)
+        first = 2 / (1 + self.spread_ratio**2)
         return first, 2 - first
 
     def noncentrality(self, sizes: Array, effect: Array) -> Array:
@@ -85,18 +85,18 @@ class TwoGroups(Design):
         return np.asarray(effect / np.sqrt(first / sizes[0] + second / sizes[1]))
 
     def parameters(self, sizes: Array, effect: Array) -> Parameters:
-        if self.sd_ratio == 1:
+        if self.spread_ratio == 1:
             return (sizes[0] + sizes[1] - 2,)
         first, second = self._variances()
         share = first / sizes[0] / (first / sizes[0] + second / sizes[1])
         return sizes[0] - 1, sizes[1] - 1, share
 
     def assumptions(self) -> tuple[str, ...]:
-        if self.sd_ratio == 1:
+        if self.spread_ratio == 1:
             return ("independent observations, normal, one variance in both groups",)
         return (
             "independent observations, normal; Welch's test, its exact power",
-            f"SD of group 2 is {self.sd_ratio:g} times that of group 1; d is in units of the root "
+            f"SD of group 2 is {self.spread_ratio:g} times that of group 1; d is in units of the root "
             "mean of the two variances",
         )
 

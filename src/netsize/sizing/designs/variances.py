@@ -127,7 +127,7 @@ class Factorial(Design):
 class RepeatedMeasures(Design):
     """Groups measured several times, equal correlation between measurements.
 
-    groups : independent groups (1: within-subjects only). measurements : K a participant.
+    groups : independent groups (1: within-subjects only). occasions : measurements K a participant.
     pair_correlation : ρ between any two measurements. sphericity : ε, which multiplies λ and both
     degrees of freedom of tests that involve the measurements (Muller & Barton 1989); ε = 1 is
     exact. tested : "within" (measurements), "between" (groups) or "interaction".
@@ -141,17 +141,17 @@ class RepeatedMeasures(Design):
     name: ClassVar[str] = "repeated"
     title: ClassVar[str] = "repeated measures, univariate F test"
 
-    measurements: int = 2
+    occasions: int = 2
     groups: int = 1
     pair_correlation: float = 0.5
     sphericity: float = 1.0
     tested: str = "within"
 
     def __post_init__(self) -> None:
-        whole("measurements", self.measurements, 2, 1000)
+        whole("occasions", self.occasions, 2, 1000)
         whole("groups", self.groups, 1, 1000)
-        between("pair_correlation", self.pair_correlation, -1 / (self.measurements - 1), 1)
-        lowest = 1 / (self.measurements - 1)
+        between("pair_correlation", self.pair_correlation, -1 / (self.occasions - 1), 1)
+        lowest = 1 / (self.occasions - 1)
         between("sphericity", self.sphericity, lowest, 1, ends="[]")
         if self.tested not in ("within", "between", "interaction"):
             raise SettingError(
@@ -168,13 +168,13 @@ class RepeatedMeasures(Design):
     def _error_share(self) -> float:
         """Error variance of the test over that of one measurement, a participant's K together."""
         if self.tested == "between":
-            return 1 + (self.measurements - 1) * self.pair_correlation
+            return 1 + (self.occasions - 1) * self.pair_correlation
         return 1 - self.pair_correlation
 
     @property
     def metrics(self) -> tuple[EffectMetric, ...]:
-        count = 1 if self.tested == "between" else self.measurements - 1
-        return _f_metrics(self._error_share * count / self.measurements)
+        count = 1 if self.tested == "between" else self.occasions - 1
+        return _f_metrics(self._error_share * count / self.occasions)
 
     def sizes(self, n: Array) -> Array:
         n = np.asarray(n)
@@ -182,14 +182,14 @@ class RepeatedMeasures(Design):
 
     def noncentrality(self, sizes: Array, effect: Array) -> Array:
         epsilon = 1.0 if self.tested == "between" else self.sphericity
-        total = sizes[0] * self.groups * self.measurements
+        total = sizes[0] * self.groups * self.occasions
         return np.asarray(effect * np.sqrt(total * epsilon / self._error_share))
 
     def parameters(self, sizes: Array, effect: Array) -> Parameters:
         subjects = self.groups * (sizes[0] - 1)
         if self.tested == "between":
             return np.asarray(self.groups - 1.0), subjects
-        within = (self.measurements - 1) * self.sphericity
+        within = (self.occasions - 1) * self.sphericity
         first = within * (self.groups - 1 if self.tested == "interaction" else 1)
         return np.asarray(first), subjects * within
 
@@ -200,7 +200,7 @@ class RepeatedMeasures(Design):
             else f"sphericity ε = {self.sphericity:g} multiplies λ and the df (approximation)"
         )
         return (
-            f"{self.measurements} measurements a participant, correlated "
+            f"{self.occasions} measurements a participant, correlated "
             f"{self.pair_correlation:g}; {spread}",
             f"the test is the {self.tested} one; f is in units of the SD of one measurement",
         )
