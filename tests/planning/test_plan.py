@@ -44,8 +44,7 @@ def test_rows_come_in_the_promised_order_with_the_promised_fields(strong):
 
 def test_the_record_is_plain_json(strong, weak):
     for plan in (strong, weak):
-        text = json.dumps(plan.to_dict(), allow_nan=False)
-        assert json.loads(text) == json.loads(json.dumps(plan.to_dict()))
+        assert json.loads(json.dumps(plan.to_dict(), allow_nan=False))["rows"]
     record = strong.to_dict()
     assert {"results", "samples", "participants", "significant", "metric"} <= set(
         record["evidence"]
@@ -240,9 +239,63 @@ def test_sensitivity_starts_from_the_plan_and_moves(strong):
     assert leave_one_out(netsize.plan(WEAK)) == ()
 
 
+def test_the_chance_of_significance_is_the_mean_power_over_everything_believed(strong):
+    answer, study = strong.answer, strong.study
+    effects = answer.distribution.quantile((np.arange(4000) + 0.5) / 4000)
+    given = study.predicted(answer.sized.units, effects).mean()
+    negligible = answer.probability_negligible
+    expected = negligible * 0.025 + (1 - negligible) * given
+    assert answer.chance_significant == pytest.approx(expected, abs=1e-3)
+
+
+def test_rules_that_are_not_conditional_on_an_effect_do_not_count_none_twice():
+    fixed = netsize.plan(WEAK, rule="fixed", planning_effect=0.5)
+    assert fixed.answer.chance_significant == pytest.approx(0.8, abs=0.01)
+    assert fixed.answer.ceiling == 1.0
+    assert fixed.answer.probability_negligible > 0.5
+    profile = netsize.plan("r(18) = .95", rule="profile")
+    assert profile.answer.chance_significant > 0.8
+
+
+def test_the_level_reaches_every_interval():
+    wide, narrow = netsize.plan(STRONG, level=0.95), netsize.plan(STRONG, level=0.8)
+    for row in wide.rows:
+        if row.low is not None:
+            other = narrow.row(row.key)
+            assert row.low < other.low < other.high < row.high
+
+
+def test_intervals_stay_on_their_scale():
+    r = netsize.plan("r(18) = .95\nr(20) = .97").row("as-printed")
+    assert r.low < r.effect < r.high < 1
+    f = netsize.plan("F(2, 30) = 3.4\nF(2, 40) = 1.1\nF(2, 50) = 8.0")
+    assert all(row.low is None or row.low >= 0 for row in f.rows)
+    same = netsize.plan("A: t(38) = 2.3\nB: t(38) = 2.3").row("as-printed")
+    assert same.low is None
+
+
+def test_several_bands_through_a_plan():
+    plan = netsize.plan(STRONG, cut_points=(0.05, 0.2, 0.5))
+    assert len(plan.literature.averaged.printing) == 3
+    assert plan.answer.value == pytest.approx(netsize.plan(STRONG).answer.value, abs=0.1)
+
+
+def test_sensitivity_passes_over_what_leaves_nothing():
+    plan = netsize.plan("A: t(38) = 3.1\nB: t(58) = 1.2\nC: t(98) = 1.1", rule="single-study")
+    assert [v.label for v in leave_one_out(plan)] == ["without B", "without C"]
+    assert sensitivity(plan)[0].group == "as planned"
+
+
 @pytest.mark.parametrize(
     ("settings", "named"),
     [
+        ({"cut_points": (0.05, 0.1, 0.2, 0.5)}, "--cut-points"),
+        ({"cut_points": (0.1, 0.05)}, "--cut-points"),
+        ({"corrections": ("magic",)}, "--corrections"),
+        ({"half_width": 0.2}, "--half-width"),
+        ({"at_most": 100}, "--at-most"),
+        ({"goal": "budget", "at_most": 1200, "fixed_cost": 1000}, "--fixed-cost"),
+        ({"rule": "fixed", "planning_effect": 1e-7}, "--planning-effect"),
         ({"alpha": 0.0}, "--alpha"),
         ({"alpha": float("nan")}, "--alpha"),
         ({"power": 1.0}, "--power"),
@@ -277,6 +330,11 @@ def test_evidence_that_cannot_be_planned_from_is_refused_in_words(text):
     with pytest.raises(InputError) as caught:
         netsize.plan(text)
     assert len(str(caught.value)) > 40
+
+
+def test_an_effect_beyond_its_scale_is_refused():
+    with pytest.raises(SettingError, match="no correlation"):
+        netsize.plan("r(57) = .5", smallest_effect=1.2)
 
 
 def test_the_rule_single_study_needs_a_significant_result():

@@ -98,8 +98,8 @@ def _matching_f(table: EffectTable) -> tuple[str, tuple[str, ...], dict[str, int
     kernel, df1 = kinds.pop()
     if kernel == "chi2":
         note = (
-            f"design taken from the evidence: a contingency table with {df1:g} degrees of freedom, its "
-            "Cohen's w shown as f (both have noncentrality f² times participants); set --design"
+            f"design taken from the evidence: a contingency table with {df1:g} degrees of freedom, "
+            "its Cohen's w shown as f (both have noncentrality f² times participants); set --design"
         )
         return "contingency", (note,), {"df1": int(df1)}
     groups = int(df1) + 1

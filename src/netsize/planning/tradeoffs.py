@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 from typing import Any
 
 import numpy as np
 
-from netsize.planning.curves import overall_chance
+from netsize.planning.curves import overall_chance, with_goal
 from netsize.planning.goals import Sized, power_at, size_for, units_within
 from netsize.planning.plan import Plan
 from netsize.planning.study import METRIC_OF, effect_on
@@ -58,9 +58,9 @@ class Affordable:
     """What a study of a given size can do.
 
     power_at_value, power_at_median : nan-free; None where the effect is not finite. chance : of a
-    significant result as predicted, negligible effects included. detectable : smallest effect found
-    with the power wanted. half_width : expected, at the planning value. cost : None without a price
-    a participant.
+    significant result as predicted over the planning distribution. detectable : smallest effect
+    found with the power wanted. half_width : expected, at the planning value. cost : None without
+    a price a participant.
     """
 
     what: str
@@ -86,7 +86,7 @@ def targets(plan: Plan) -> tuple[Target, ...]:
     effects = np.maximum(quantiles, settings.smallest_effect or -np.inf)
     out = []
     for power in powers:
-        goal = replace(settings, goal="power", power=power)
+        goal = with_goal(settings, goal="power", power=power)
         inward = effect_on(plan.study, plan.metric, np.where(np.isfinite(effects), effects, 0.0))
         sized = size_for(plan.study, goal, inward)
         out += [
@@ -108,9 +108,13 @@ def narrow(plan: Plan) -> tuple[Narrow, ...]:
     return tuple(
         Narrow(
             half_width=w,
-            sized=size_for(plan.study, replace(plan.settings, goal="precision", half_width=w), at)[
-                0
-            ],
+            sized=size_for(
+                plan.study,
+                with_goal(
+                    plan.settings, goal="precision", half_width=w, assured=plan.settings.assured
+                ),
+                at,
+            )[0],
         )
         for w in widths
     )

@@ -12,15 +12,9 @@ from scipy.special import stdtrit
 from netsize.effect_sizes.records import Evidence
 from netsize.numerics.arrays import Array, IntArray
 
-__all__ = ["HABITS", "Habit", "World", "simulate"]
+__all__ = ["Habit", "World", "simulate"]
 
 Habit: TypeAlias = Literal["plain", "lenient", "stopping", "dropping"]
-HABITS: dict[str, str] = {
-    "plain": "printed for certain when p < .05 as predicted, with probability ω otherwise",
-    "lenient": "the bar is p < .10 while the model believes it to be .05",
-    "stopping": "tested after half, three quarters and all participants; stopped once p < .05",
-    "dropping": "two outcomes correlated .5 measured, the one with the larger t reported",
-}
 
 _LOOKS = (0.5, 0.75, 1.0)
 _OUTCOME_CORRELATION = 0.5
@@ -32,7 +26,11 @@ class World:
 
     results : k printed results a literature. mean, spread : μ and τ of the true effects, as
     standardized mean differences. printing : ω, chance of printing a result that misses the bar.
-    smallest, largest : group sizes, uniform. habit : what researchers do (see `HABITS`).
+    smallest, largest : group sizes, uniform. habit : what researchers do,
+        "plain"     a result is printed when p < .05 as predicted, otherwise with probability ω;
+        "lenient"   the bar is p < .10, while the model believes it to be .05;
+        "stopping"  tested after half, three quarters and all participants, stopped once p < .05;
+        "dropping"  of two outcomes correlated .5 the one with the larger t is reported.
     """
 
     results: int
@@ -91,7 +89,11 @@ def _one_test(theta: Array, n: IntArray, rng: np.random.Generator) -> tuple[Arra
 
 
 def _stopping(theta: Array, n: IntArray, rng: np.random.Generator) -> tuple[Array, IntArray]:
-    """Group means and pooled sums of squares grow look by look; the first p < .05 is reported."""
+    """Group means and pooled sums of squares grow look by look; the first p < .05 is reported.
+
+    The sums of squares grow independently of the means, which leaves each look's t exact and the
+    joint law of the looks very nearly so.
+    """
     looks = np.array([np.maximum((share * n).astype(np.int64), 2) for share in _LOOKS])
     total = np.zeros(n.size)
     squares = np.zeros(n.size)

@@ -48,8 +48,8 @@ __all__ = [
     "surface",
 ]
 
-# Exact curves are computed at every third grid point and splined between: the logarithms are so
-# smooth that at three quarters of a standard error this costs less than 1e-4.
+# Exact curves are computed at every third grid point, three quarters of a standard error apart, and
+# splined between: their logarithms are smooth on that scale (the brute-force test bounds the cost).
 _THINNING = 3
 _MIN_POINTS, _MAX_POINTS = 60, 40_000
 # Probabilities below these are levelled: tails that far out are noise or zero in double precision,

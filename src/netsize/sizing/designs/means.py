@@ -28,8 +28,8 @@ class TwoGroups(Design):
 
     ratio : size of group 2 over group 1. The smaller group has a whole number n of participants,
         the larger the next whole number at or above n times the ratio (or its inverse).
-    spread_ratio : SD in group 2 over group 1; 1 means equal variances and the pooled test. Otherwise
-        d is in units of the root mean of the two variances (Cohen 1988, eq. 2.3.2).
+    spread_ratio : SD in group 2 over group 1; 1 means equal variances and the pooled test.
+        Otherwise d is in units of the root mean of the two variances (Cohen 1988, eq. 2.3.2).
     """
 
     name: ClassVar[str] = "two-groups"
@@ -96,8 +96,8 @@ class TwoGroups(Design):
             return ("independent observations, normal, one variance in both groups",)
         return (
             "independent observations, normal; Welch's test, its exact power",
-            f"SD of group 2 is {self.spread_ratio:g} times that of group 1; d is in units of the root "
-            "mean of the two variances",
+            f"SD of group 2 is {self.spread_ratio:g} times that of group 1; d is in units of the "
+            "root mean of the two variances",
         )
 
 
