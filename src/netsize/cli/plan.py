@@ -8,6 +8,7 @@ from typing import Annotated, Any
 import typer
 
 from netsize.cli.options import SkipUnread, Source, planning_options
+from netsize.cli.waiting import waiting
 
 __all__ = ["plan"]
 
@@ -42,12 +43,14 @@ def plan(
     from netsize.planning import sensitivity as vary
     from netsize.presentation.planning import show_plan, show_variations
 
-    made = netsize.plan(load(source), skip_unread=skip_unread, **(choices or {}))
-    if figures is not None:
-        from netsize.presentation.report.files import write_figures
+    reading = load(source)
+    with waiting("fitting the evidence"):
+        made = netsize.plan(reading, skip_unread=skip_unread, **(choices or {}))
+        if figures is not None:
+            from netsize.presentation.report.files import write_figures
 
-        write_figures(made, figures)
-    variations = (*vary(made), *leave_one_out(made)) if sensitivity else ()
+            write_figures(made, figures)
+        variations = (*vary(made), *leave_one_out(made)) if sensitivity else ()
     if as_json:
         record = made.to_dict()
         if sensitivity:

@@ -9,6 +9,7 @@ import typer
 
 from netsize.cli.options import SkipUnread, Source, numbers
 from netsize.cli.source import load, usable
+from netsize.cli.waiting import waiting
 from netsize.errors import SettingError
 
 __all__ = ["weigh"]
@@ -71,18 +72,20 @@ def weigh(
 
     if as_json and as_csv:
         raise SettingError("--json and --csv", "choose one of them")
-    weighing = netsize.weigh(
-        usable(load(source), skip_unread=skip_unread),
-        heterogeneity=heterogeneity,
-        interval=interval,
-        level=level,
-        within_sample_correlation=within_sample_correlation,
-        dependence=dependence,
-        steps=numbers("--steps", steps),
-        metric=metric,
-        correlation=correlation,
-        alpha=alpha,
-    )
+    reading = usable(load(source), skip_unread=skip_unread)
+    with waiting("weighing the evidence"):
+        weighing = netsize.weigh(
+            reading,
+            heterogeneity=heterogeneity,
+            interval=interval,
+            level=level,
+            within_sample_correlation=within_sample_correlation,
+            dependence=dependence,
+            steps=numbers("--steps", steps),
+            metric=metric,
+            correlation=correlation,
+            alpha=alpha,
+        )
     if as_json:
         typer.echo(json.dumps(weighing.to_dict(), ensure_ascii=False, allow_nan=False))
     elif as_csv:
