@@ -12,6 +12,7 @@ from netsize.presentation.format import MISSING
 from netsize.presentation.terminal import Column, show_list, show_table, show_text
 from netsize.reported.check import Finding
 from netsize.reported.records import Printed, Reading, ReportedResult
+from netsize.reported.summaries import is_negative
 from netsize.reported.unread import unread_place
 
 __all__ = ["show_reading", "statistic", "write_reading_csv"]
@@ -203,12 +204,8 @@ def _names(labels: list[str]) -> str:
 
 
 def _positive(result: ReportedResult) -> bool:
-    if result.family == "means":
-        first, second = result.groups
-        return (first.mean - second.mean) * result.direction >= 0
-    signed = result.family in ("t", "r", "z", "smd", "coefficient", "estimate")
-    value = result.value if signed and result.value is not None else 1.0
-    return value * result.direction >= 0
+    negative = is_negative(result.family, result.value, result.groups, result.counts)
+    return negative == (result.direction == -1)
 
 
 def _summary(reading: Reading) -> str:

@@ -42,7 +42,8 @@ def arguments_in(
             return None
         if patterns.NUMBER_HERE.match(text, relation.end()) is None:
             return None
-        function = not any(c.isdigit() for c in content)  # f(x) = 2.3, t(n) = 4
+        # f(x) = 2.3, t(n) = 4, the half-life t(1/2) = 4 h
+        function = content == "1/2" or not any(c.isdigit() for c in content)
         raise Fault(fault.reason, *place, harmless=function) from None
     if kind in ARGUMENT_COUNT and not (arguments == () and flags):
         if len(arguments) == 1 and kind == "F" and not patterns.RELATION.match(text, inside.end()):

@@ -12,11 +12,10 @@ from netsize.reported.faults import Fault
 from netsize.reported.grouping import Group
 from netsize.reported.records import Origin, Printed
 from netsize.reported.sizes import sizes_of
+from netsize.reported.summaries import is_negative
 from netsize.reported.tags import Settings
 
 __all__ = ["fields_of"]
-
-_SIGNED = frozenset(("t", "r", "z", "smd", "coefficient", "means", "estimate"))
 
 
 def fields_of(
@@ -106,12 +105,9 @@ def _set_direction(
     defaults: Settings,
     against_words: bool,
 ) -> None:
-    value = fields.get("value")
-    signed = fields["family"] in _SIGNED
-    negative = signed and value is not None and value < 0
-    if fields["family"] == "means":
-        first, second = fields["groups"]
-        negative = first.mean < second.mean
+    negative = is_negative(
+        fields["family"], fields.get("value"), fields.get("groups", ()), fields.get("counts", ())
+    )
     origin: Origin = "tag" if "against" in tags else "default"
     said = tags.get("against", defaults.get("against"))
     if said is None and against_words:

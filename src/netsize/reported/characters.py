@@ -57,7 +57,9 @@ _ENTITIES = {
     "&lt;": "<", "&gt;": ">", "&amp;": "&", "&nbsp;": " ", "&minus;": "-", "&ndash;": "-",
     "&le;": "<", "&ge;": ">", "&thinsp;": " ", "&chi;": "χ", "&eta;": "η", "&sup2;": "^2",
 }  # fmt: skip
-_RUNS = "|".join(["[" + "".join(_RAISED) + "]+", *map(re.escape, _ENTITIES), "\r\n?"])
+# a word divided at the end of a line: "sig-" and "nificant"
+_DIVIDED = r"(?<=[a-z])-(?:\r\n?|\n)(?=[a-z])"
+_RUNS = "|".join(["[" + "".join(_RAISED) + "]+", *map(re.escape, _ENTITIES), _DIVIDED, "\r\n?"])
 
 
 @dataclass(frozen=True, slots=True)
@@ -85,7 +87,13 @@ class Characters:
 
 def normalise(text: str) -> Characters:
     """Normalise in time and memory linear in the length of `text`."""
-    if text.isascii() and "&" not in text and "\r" not in text and "`" not in text:
+    if (
+        text.isascii()
+        and "&" not in text
+        and "\r" not in text
+        and "`" not in text
+        and "-\n" not in text
+    ):
         return Characters(text.translate(_CONTROL) if "\f" in text or "\v" in text else text)
     table = {c: _plain(c) for c in set(text) if not c.isascii() or c in "`\v\f"}
     same_length = {ord(c): r for c, r in table.items() if len(r) == 1 and c not in _RAISED}
@@ -126,6 +134,8 @@ def _replacement(run: str, table: dict[str, str]) -> str:
         return "^" + "".join(_RAISED[c] for c in run)
     if run[0] == "\r":
         return "\n"
+    if run[0] == "-":
+        return ""
     return _ENTITIES[run] if run in _ENTITIES else table[run]
 
 

@@ -20,6 +20,8 @@ def effect_name(item: Item) -> str:
     if item.kind == "eta":
         return _variance_share_name(item.name)
     if item.kind == "r2":
+        if symbol[0] == "a":
+            return "adjusted-R2"
         return "R2-change" if symbol[0] in "δd" or "change" in symbol else "R2"
     if item.kind == "phi":
         return "V" if "v" in symbol else "w" if symbol == "w" else "phi"
@@ -42,8 +44,16 @@ def _ratio_name(symbol: str) -> str:
 
 def _mean_difference_name(symbol: str) -> str:
     bare = symbol.removeprefix("cohen").removeprefix("hedges").removeprefix("glass")
-    bare = bare.removeprefix("'").removeprefix("s")
-    return {"dz": "dz", "dav": "dav", "drm": "drm", "δ": "Δ"}.get(bare, bare[:1])
+    bare = bare.removeprefix("'").removeprefix("s").partition("(")[0].partition("[")[0]
+    return {
+        "md": "d",
+        "tandardizedmeandifference": "d",
+        "tandardisedmeandifference": "d",
+        "dz": "dz",
+        "dav": "dav",
+        "drm": "drm",
+        "δ": "Δ",
+    }.get(bare, bare[:1])
 
 
 def _variance_share_name(name: str) -> str:

@@ -35,6 +35,9 @@ __all__ = [
 ]
 
 
+_LARGEST_RATIO = 20.0
+
+
 def from_odds(context: Context) -> Fields:
     item = context.primary
     if item.number is None or item.number.value <= 0:
@@ -61,6 +64,8 @@ def from_ratio(context: Context) -> Fields:
     item = context.primary
     if item.number is None or item.number.value <= 0:
         raise Fault("a ratio is above 0")
+    if item.name in ("HR", "RR") and item.number.value >= _LARGEST_RATIO:
+        raise Fault(f"{item.name} may be a rate, such as a heart rate; write hazard or risk ratio")
     if item.interval is None:
         raise Fault(f"{item.name} needs its interval: {item.name} = 1.85, 95% CI [1.10, 3.10]")
     if item.interval.low <= 0:
@@ -191,8 +196,18 @@ def from_smd(context: Context) -> Fields:
     item = context.group.first("smd")
     assert item is not None
     name = effect_name(item)
-    if not context.sizes.n and item.interval is not None and name in ("d", "g"):
-        return ready_made(item, "mean-difference", float)
+    error = context.group.first("se")
+    if not context.sizes.n and name in ("d", "g"):
+        if item.interval is not None:
+            return ready_made(item, "mean-difference", float)
+        if error is not None and error.number is not None and error.number.value > 0:
+            return {
+                "family": "estimate",
+                **number_fields(item),
+                "standard_error": error.number.value,
+                "metric": "mean-difference",
+                "notes": (f"{item.name} with its SE, read as a ready-made effect",),
+            }
     if not context.sizes.n:
         raise Fault(
             f"{item.name} alone needs the number of participants: {item.name} = 0.5, n = 20, 22"
@@ -225,6 +240,8 @@ def from_share(context: Context) -> Fields:
     item = context.group.first("eta", "r2")
     assert item is not None
     assert item.number is not None
+    if effect_name(item) == "adjusted-R2":
+        raise Fault("an adjusted R² says too little; print R² with n, or its F")
     if not item.number.value < 1:
         raise Fault("a share of variance is below 1")
     if not context.sizes.n:

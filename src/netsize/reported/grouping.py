@@ -142,7 +142,8 @@ def _joins(group: Group, item: Item, text: str) -> bool:
     if group.primary is None and all(i.kind == "size" for i in group.items):
         return _only_connectors(gap, patterns.SAMPLE_WORDS)  # "n = 40, p = .03", not "N = 80 ..."
     same = [i for i in group.items if i.kind == item.kind and i.name != NOT_SIGNIFICANT]
-    return not same or (item.kind == "smd" and all(i.name != item.name for i in same))
+    several = item.kind in ("smd", "eta", "r2")
+    return not same or (several and all(i.name != item.name for i in same))
 
 
 def _describes(group: Group, gap: str) -> bool:

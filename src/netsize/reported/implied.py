@@ -133,6 +133,8 @@ def _mean_differences(
     else:
         scale = 2 / math.sqrt(error + 2)
         two = (low * scale * shrunk, high * 2 / math.sqrt(error))
+        if error != int(error):  # Welch's df may lie far below n - 2, down to the smaller n - 1
+            two = (low / math.sqrt(error + 1) * shrunk, two[1])
     n = error + 1
     pairs = (low / math.sqrt(n) * shrunk, high / math.sqrt(error))
     return [("two groups", *two), ("a paired or one-sample test", *pairs)]

@@ -23,9 +23,12 @@ __all__ = [
     "COUNT_PAIR",
     "CRITICAL_VALUE",
     "DESIGN_WORDS",
+    "ESTIMATE_THEN_INTERVAL",
     "HEADS",
     "INTERVAL",
     "LABEL_WITHIN_LINE",
+    "LEGEND",
+    "LEGEND_RELATION",
     "LEVEL_AFTER",
     "LEVEL_BEFORE",
     "MARKS",
@@ -86,13 +89,13 @@ _SYMBOLS = (
     (
         "odds",
         "OoaA",
-        rf"{_ADJUSTED}(?:[Oo]dds[ ]ratio|[aA]?OR)s?\b(?:[ ]?\(a?OR\))?",
+        rf"{_ADJUSTED}(?:[Oo]dds[ ]ratio|[aA]?OR)s?\b(?:[ ]?[(\[][aA]?OR[)\]])?",
     ),
     (
         "ratio",
         "aARrHhI",
         rf"{_ADJUSTED}(?:a?RR|a?HR|IRR|[Rr]isk[ ]ratio|[Rr]elative[ ]risk|"
-        r"[Hh]azards?[ ]ratio)\b(?:[ ]?\([a-zA-Z]{1,4}\))?",
+        r"[Hh]azards?[ ]ratio)\b(?:[ ]?[(\[][a-zA-Z]{1,4}[)\]])?",
     ),
     (
         "padjusted",
@@ -139,7 +142,8 @@ _SYMBOLS = (
     ),
     (
         "smd",
-        "CHGdgΔ",
+        "CHGdgΔSs",
+        r"(?:SMD|[Ss]tandardi[sz]ed[ ]mean[ ]difference)s?\b(?:[ ]?[(\[]SMD[)\]])?|"
         r"(?:Cohen'?s?[ ]|Hedges'?s?[ ]|Glass'?s?[ ])?"
         r"(?:d|g|Δ)_?(?:av|rm|unb|unbiased|[zsp])?(?=[ ]?(?:[=<>:]|of[ ]|was[ ]|\())",
     ),
@@ -156,8 +160,8 @@ _SYMBOLS = (
     ),
     (
         "F",
-        "Ff",
-        r"F(?:[12]|[ _-]?change)?(?=[ ]{0,2}[(\[{]|[ -](?:value|ratio|statistic))"
+        "FfΔ",
+        r"Δ?[ ]?F(?:[12]|[ _-]?change)?(?=[ ]{0,2}[(\[{]|[ -](?:value|ratio|statistic))"
         r"|[Ff](?=[ ]?_?\{?[0-9(\[=<>])",
     ),
     (
@@ -204,6 +208,11 @@ RELATION = re.compile(
     r"[ \t]{0,12}(?:([=<>](?:[ ]?[=<>]){0,2}|:(?![/:]))"
     r"|(?:values?[ ])?(of|was|is|equals|equal[ ]to)(?![\w]))"
     r"[ \t]{0,12}"
+)
+# HR 0.68 (95% CI, 0.51-0.91), OR, 1.85 [1.10-3.10]: as medical journals print estimates
+ESTIMATE_THEN_INTERVAL = re.compile(
+    rf"[,:]?[ ]{{0,2}}(?={NUMBER}[ ]?[,;]?[ ]?[(\[]?[ ]?"
+    r"[0-9]{2}(?:\.[0-9]{1,2})?[ ]?%[ ]?(?:CI|C\.I|[Cc]onf))"
 )
 # (38) = 2.31 and (1, 56) < 5.12: a value with a decimal point, closed by something that cannot go
 # on with it. Nearly every statistic is of this form and needs none of the patterns below.
@@ -284,19 +293,24 @@ LABEL_WITHIN_LINE = re.compile(
     r"|(?<=\b(?:Expt|Expe))\.|(?<=\b(?:No|St|Nr))\.){1,80}):[ \t]{0,12}\Z"
 )
 DESIGN_WORDS = re.compile(
-    r"\b(?:(?P<paired>[Pp]aired|[Dd]ependent|[Ww]ithin[ -]subjects?|[Mm]atched|"
-    r"[Rr]epeated[ -]measures)"
-    r"|(?P<one>[Oo]ne[ -]sample|[Ss]ingle[ -]sample)"
-    r"|(?P<two>[Ii]ndependent|[Tt]wo[ -]sample|[Bb]etween[ -]subjects?|[Uu]npaired|Welch(?:'s)?))"
-    r"(?:[ -](?:samples?|groups?|means))?(?:[ -]Student(?:'s)?)?"
+    r"\b(?:(?P<paired>[Pp]aired|[Dd]ependent|[Ww]ithin[ -]?subjects?|[Mm]atched|"
+    r"[Rr]epeated[ -]?measures)"
+    r"|(?P<one>[Oo]ne[ -]?sample|[Ss]ingle[ -]?sample)"
+    r"|(?P<two>[Ii]ndependent|[Tt]wo[ -]?sample|[Bb]etween[ -]?subjects?|[Uu]npaired|Welch(?:'s)?))"
+    r"(?:[ -]?(?:samples?|groups?|means))?(?:[ -]Student(?:'s)?)?"
     r"(?:[ -](?:t[ -]?tests?|ANOVAs?|analysis[ ]of[ ]variance)\b[^.;:\n]{0,60})?[ :,(-]{0,3}\Z"
 )
-TAILS_WORDS = re.compile(r"\b(one|1|two|2)[ -]?(?:tailed|sided|tail)\b", re.IGNORECASE)
+TAILS_WORDS = re.compile(
+    r"(?<![0-9.])(?<![A-Za-oq-z])(one|1|two|2)[ -]?(?:tailed|sided|tail)\b", re.IGNORECASE
+)
 # A level of significance is no result: alpha was p < .05; p < .05 was considered significant.
 LEVEL_BEFORE = re.compile(
     r"(?:\balpha|α|threshold|criterion|significance[ ]level|level[ ]of[ ]significance|"
     r"significant[ ](?:if|when)|set[ ]at)[^.;:,]{0,25}\Z"
 )
+# "* p < .05" under a table says what the stars mean
+LEGEND = re.compile(r"(?:^|[^0-9*†‡§+^)][ ]?|\n)(?:[*†‡§+]|\^[*†‡§+a-f]){1,4}[ ]?\Z")
+LEGEND_RELATION = re.compile(r"[ ]?[<>]")
 LEVEL_AFTER = re.compile(
     r"[ ](?:was|were|is|are)[ ](?:considered|taken|used|set|regarded|deemed|chosen)"
 )

@@ -183,7 +183,7 @@ def _other(match: re.Match[str], text: str) -> Item | None:
 
 def _is_word(name: str) -> bool:
     """Words such as "best(38)"; Q, H, minF' and the like are statistics of other kinds."""
-    return len(name) > 2 and name.isalpha() and name[1:].islower()
+    return len(name) > 2 and name.lower() != "chi" and name.isalpha() and name[1:].islower()
 
 
 PIECES: dict[str, Callable[[re.Match[str], str], Item | None]] = {

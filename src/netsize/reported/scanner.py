@@ -95,6 +95,11 @@ def _statistic(kind: str, match: re.Match[str], text: str) -> Item | None:
             flags.add("bare")
             at = bare.end()
     relation = patterns.RELATION.match(text, at)
+    if kind in ("odds", "ratio", "smd") and (relation is None or relation[1] == ":"):
+        before = patterns.ESTIMATE_THEN_INTERVAL.match(text, at)
+        if before:
+            number, end = printed_number(text, before.end(), "=", kind, start)
+            return Item(kind, match[0], start, end, number)
     spoken = bracketed or worded or kind in ("smd", "odds", "ratio") or match[0][1:]
     if relation is None or (relation[2] and not spoken):
         if not bracketed or kind == "p":
@@ -119,6 +124,10 @@ def _statistic(kind: str, match: re.Match[str], text: str) -> Item | None:
 def _is_level(text: str, match: re.Match[str]) -> bool:
     """Whether this p names a level of significance instead of a result."""
     start, end = match.span()
+    if text[start - 1 : start] in "*†‡§+ abcdef" and patterns.LEGEND.search(
+        text[max(start - 8, 0) : start]
+    ):
+        return patterns.LEGEND_RELATION.match(text, end) is not None
     if patterns.LEVEL_BEFORE.search(text[max(start - 50, 0) : start]):
         return True
     value = patterns.RELATION.match(text, end)

@@ -3,13 +3,34 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Sequence
 
 from netsize.reported.faults import Fault
 from netsize.reported.grouping import Group
 from netsize.reported.records import Counts
 from netsize.reported.records import Group as GroupSummary
 
-__all__ = ["complete_means", "counts_chi_squares", "counts_ratio", "means_t"]
+__all__ = ["complete_means", "counts_chi_squares", "counts_ratio", "is_negative", "means_t"]
+
+_SIGNED = frozenset(("t", "r", "z", "smd", "coefficient", "estimate"))
+
+
+def is_negative(
+    family: str,
+    value: float | None,
+    groups: Sequence[GroupSummary] = (),
+    counts: Sequence[Counts] = (),
+) -> bool:
+    """Whether the effect is printed with a minus sign, a ratio below 1 or a first group below the
+    second; F, chi-square and shares of variance have no sign.
+    """
+    if family == "means":
+        return groups[0].mean < groups[1].mean
+    if family == "counts":
+        return counts[0].events * counts[1].n < counts[1].events * counts[0].n
+    if value is None:
+        return False
+    return value < 1 if family == "odds-ratio" else family in _SIGNED and value < 0
 
 
 def complete_means(group: Group) -> tuple[GroupSummary, ...]:

@@ -11,6 +11,7 @@ from netsize.reported.records import Interval, Printed, Relation
 
 __all__ = ["bare_interval", "printed_number"]
 
+_BROKEN = re.compile(r"[ ]?[0-9]?[.,][ \n]{1,12}[0-9]")
 _P_KINDS = frozenset(("p", "padjusted"))
 
 
@@ -27,6 +28,9 @@ def printed_number(
         odd = patterns.NOT_FINITE.match(text, at)
         if odd:
             raise Fault(f'"{odd[0].strip()}" is not a number that can be used', start, odd.end())
+        broken = _BROKEN.match(text, at)
+        if broken:
+            raise Fault("the number is broken in two", start, broken.end())
         return None, at
     end = found.end()
     try:
