@@ -4,6 +4,8 @@ from __future__ import annotations
 
 import hashlib
 import shlex
+import sys
+from contextlib import AbstractContextManager, nullcontext
 from pathlib import Path
 from typing import Annotated, Any
 
@@ -88,14 +90,26 @@ def _made(source: str | None, skip_unread: bool, choices: dict[str, Any]) -> Any
     reading = load(source)
     parts = ["netsize", "report", Path(source).name if source and named else "-"]
     parts += spelled(choices) + (["--skip-unread"] if skip_unread else [])
-    return make(
-        reading,
-        skip_unread=skip_unread,
-        name=Path(source).name if source and named else "standard input",
-        sha256=hashlib.sha256(Path(source).read_bytes()).hexdigest() if source and named else None,
-        command=shlex.join(parts),
-        **choices,
-    )
+    with _waiting():
+        return make(
+            reading,
+            skip_unread=skip_unread,
+            name=Path(source).name if source and named else "standard input",
+            sha256=hashlib.sha256(Path(source).read_bytes()).hexdigest()
+            if source and named
+            else None,
+            command=shlex.join(parts),
+            **choices,
+        )
+
+
+def _waiting() -> AbstractContextManager[object]:
+    """Something that moves on a terminal while the fits run; nothing in a pipe."""
+    if not sys.stderr.isatty():
+        return nullcontext()
+    from rich.console import Console
+
+    return Console(stderr=True).status("Fitting, then again under other assumptions ...")
 
 
 def _alone(
@@ -120,7 +134,8 @@ def _check(path: str) -> None:
     from netsize.presentation.report import differences, load_document
 
     document = load_document(path)
-    found = differences(document)
+    with _waiting():
+        found = differences(document)
     made = f"made with netsize {document.version}, recomputed with {netsize.__version__}"
     if not found:
         typer.echo(f"Nothing differs ({made}).")

@@ -71,8 +71,8 @@ FIGURES: dict[str, Kind] = {
         BeliefFigure,
         belief_figure,
         draw_belief,
-        "The planning distribution: what is believed about the effect of the new study, given that "
-        "there is one.",
+        "The planning distribution: what is believed about the effect of the new study. Shaded: "
+        "the part below the planning quantile.",
     ),
     "sizes": Kind(
         SizesFigure,

@@ -23,10 +23,13 @@ __all__ = ["BeliefFigure", "belief_figure", "draw_belief"]
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class BeliefFigure:
-    """What the figure shows, on the shown scale. quantile : at 1 - assurance."""
+    """What the figure shows, on the shown scale.
+
+    conditional : whether the distribution is that given an effect. quantile : at 1 - assurance.
+    """
 
     symbol: str
-    title: str
+    conditional: bool
     density: Density
     assurance: float
     quantile: float
@@ -41,8 +44,9 @@ class BeliefFigure:
     @property
     def description(self) -> str:
         """For readers who cannot see it."""
+        given = ", given that there is one" if self.conditional else ""
         text = (
-            f"Density of the effect of the new study, given that there is one: median "
+            f"Density of the effect of the new study{given}: median "
             f"{fmt.effect(self.median)}, central 95% {fmt.interval(self.low, self.high)}. "
             f"Planning value {fmt.effect(self.value)}"
         )
@@ -63,7 +67,7 @@ def belief_figure(plan: Plan) -> BeliefFigure:
     a = plan.answer
     return BeliefFigure(
         symbol=plan.metric.symbol,
-        title=plan.metric.title,
+        conditional=plan.settings.rule == "averaged",
         density=density(plan),
         assurance=a.assurance,
         quantile=a.quantile,
@@ -108,7 +112,8 @@ def draw_belief(shown: BeliefFigure, *, ax: Axes | None = None) -> Figure:
     _names(ax, shown, marks, peak, low, high)
     at = canvas.steps(low, high, 6)
     canvas.ticks(ax, at, [fmt.tick(x) for x in at])
-    canvas.name(ax, x=f"effect of the new study, given one ({shown.symbol})", over=place)
+    given = ", given one" if shown.conditional else ""
+    canvas.name(ax, x=f"effect of the new study{given} ({shown.symbol})", over=place)
     return canvas.root(ax)
 
 

@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from netsize.planning.plan import Plan
+from netsize.planning.rows import Row
 from netsize.presentation import format as fmt
 from netsize.presentation.figures import canvas
 from netsize.presentation.figures.canvas import BLUE, GREY, INK, ORANGE
@@ -17,7 +18,7 @@ if TYPE_CHECKING:
     from matplotlib.axes import Axes
     from matplotlib.figure import Figure
 
-__all__ = ["EvidenceFigure", "Line", "draw_evidence", "evidence_figure"]
+__all__ = ["EvidenceFigure", "Line", "draw_evidence", "ends_of", "evidence_figure"]
 
 _MOST_LABELLED = 60
 _PITCH = 3.5  # millimetres a labelled row
@@ -91,13 +92,23 @@ def evidence_figure(plan: Plan) -> EvidenceFigure:
             Line(
                 label=_SHORT.get(row.key, row.label),
                 value=row.effect,
-                low=row.low,
-                high=row.high,
+                low=ends_of(row)[0],
+                high=ends_of(row)[1],
                 corrected=row.key in corrected,
             )
             for row in plan.rows
             if row.key not in ("largest-printed", "planning-value")
         ),
+    )
+
+
+def ends_of(row: Row) -> tuple[float | None, float | None]:
+    """The interval of a row; where only one end is finite the other is infinite."""
+    if row.low is None and row.high is None:
+        return None, None
+    return (
+        -math.inf if row.low is None else row.low,
+        math.inf if row.high is None else row.high,
     )
 
 

@@ -49,7 +49,7 @@ _CONDITIONS: dict[str, _Condition] = {
     "Sidik & Jonkman 2005": _chosen("heterogeneity", "sidik-jonkman"),
     "Steiger 2004": lambda plan: plan.metric.name == "cohen-f",
     "Taylor & Muller 1996": _chosen("rule", "single-study"),
-    "Welch 1938": lambda plan: getattr(plan.study.design, "sd_ratio", 1.0) != 1.0,
+    "Welch 1938": lambda plan: getattr(plan.study.design, "spread_ratio", 1.0) != 1.0,
 }
 
 

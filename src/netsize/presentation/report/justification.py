@@ -14,7 +14,7 @@ from netsize.presentation import format as fmt
 from netsize.presentation.headline import planned, value_in_words
 from netsize.synthesis.weighing import Weighing
 
-__all__ = ["full_methods", "one_sentence", "protocol_paragraph"]
+__all__ = ["full_methods", "one_sentence", "over_everything", "protocol_paragraph"]
 
 _TESTS = {
     "two-groups": "a t test of two independent groups",
@@ -35,19 +35,19 @@ def one_sentence(plan: Plan) -> str:
             f"From {_literature(plan)}, no finite sample size reaches {_power(plan)} with "
             f"{_assurance(plan)} assurance (planning value {_value(plan)})."
         )
-    naive, value = plan.row("as-printed"), plan.row("planning-value")
-    if plan.settings.goal == "budget":
-        return (
-            f"The budget allows {planned(plan)}, which gives {fmt.percent(value.power or 0.0)} "
-            f"power at {_value(plan)}, {value_in_words(plan)}, estimated from {_literature(plan)}."
-        )
-    text = f"We plan for {planned(plan)}, {_purpose(plan)} at {_value(plan)}, "
-    text += f"{value_in_words(plan)}, estimated from {_literature(plan)}"
-    if naive.sized.n_total is None or value.power_of_naive_n is None:
+    naive, value, goal = plan.row("as-printed"), plan.row("planning-value"), plan.settings.goal
+    basis = f"{_value(plan)}, {value_in_words(plan)}"
+    if not _given(plan):
+        basis += f" (estimated from {_literature(plan)})"
+    if goal == "budget":
+        power = fmt.percent(value.power or 0.0)
+        return f"The budget allows {planned(plan)}: {power} power at {basis}."
+    text = f"We plan for {planned(plan)}: {_purpose(plan)} at {basis}"
+    if goal == "precision" or naive.sized.n_total is None or value.power_of_naive_n is None:
         return text + "."
     return (
-        f"{text}; their mean as printed ({_symbol(plan)} = {fmt.effect(naive.effect)}) would "
-        f"suggest {fmt.count(naive.sized.n_total)} participants, with "
+        f"{text}; the mean of the printed effects ({_symbol(plan)} = {fmt.effect(naive.effect)}) "
+        f"would suggest {fmt.count(naive.sized.n_total)} participants, with "
         f"{fmt.percent(value.power_of_naive_n)} power at that value."
     )
 
@@ -86,14 +86,22 @@ def _evidence(plan: Plan) -> list[str]:
     literature = plan.literature
     text = (
         f"The sample size rests on {_literature(plan)} "
-        f"({fmt.count(sum(literature.samples.values()))} participants), of which "
-        f"{literature.significant} {'is' if literature.significant == 1 else 'are'} significant "
-        f"{_as_predicted(plan)}"
+        f"({fmt.count(sum(literature.samples.values()))} participants), {_significant(plan)}"
     )
     if literature.left_out:
         count = len(literature.left_out)
         text += f"; {count} more {'was' if count == 1 else 'were'} read and left out"
     return [text + "."]
+
+
+def _significant(plan: Plan) -> str:
+    k, significant = len(plan.literature.rows), plan.literature.significant
+    if k == 1:
+        return f"which is {'' if significant else 'not '}significant {_as_predicted(plan)}"
+    share = {0: "none", k: "all"}.get(significant, str(significant))
+    return f"{share} of which {'is' if significant in (0, 1) else 'are'} significant " + (
+        _as_predicted(plan)
+    )
 
 
 def _reading(plan: Plan, disagreements: int) -> list[str]:
@@ -119,7 +127,11 @@ def _belief(plan: Plan) -> list[str]:
     symbol, rule = _symbol(plan), plan.settings.rule
     sentences = []
     if naive.effect is not None:
-        sentences.append(f"As printed, the effects average {symbol} = {fmt.effect(naive.effect)}.")
+        several = plan.literature.printed.size > 1
+        sentences.append(
+            f"As printed, the effect{'s average' if several else ' is'} {symbol} = "
+            f"{fmt.effect(naive.effect)}."
+        )
     negligible = (
         f"The posterior probability of a negligible effect is "
         f"{_probability(answer.probability_negligible)}."
@@ -134,25 +146,26 @@ def _belief(plan: Plan) -> list[str]:
         f"a median of {symbol} = {fmt.effect(answer.median)}, central 95% interval "
         f"{fmt.interval(answer.low, answer.high)}"
     )
-    whose = (
-        "of a new study's effect" if plan.settings.target == "new-study" else "of the mean effect"
-    )
+    whose = "a new study's effect" if plan.settings.target == "new-study" else "the mean effect"
     if rule in ("averaged", "profile"):
         sentences.append(
             "Because significant results may have been likelier to be printed, we did not plan for "
-            "that average but fitted a selection model to the exact distributions of the printed "
-            "statistics (after Hedges 1992; Vevea & Hedges 1995)."
+            "the printed effects but fitted a selection model to the exact distributions of the "
+            "printed statistics (after Hedges 1992; Vevea & Hedges 1995)."
         )
-        sentences.append(f"Given that there is an effect, {whose} has {middle}.")
+        given = (
+            f"Given that there is an effect, {whose}" if rule == "averaged" else whose.capitalize()
+        )
+        sentences.append(f"{given} has {middle}.")
     else:
         source = "the pooled mean" if rule == "pooled-limit" else "one significant study"
         sentences.append(f"The planning distribution comes from {source} ({middle}).")
     sentences.append(negligible)
-    if len(plan.literature.samples) < 5:
-        count = len(plan.literature.samples)
+    samples = len(plan.literature.samples)
+    if samples < 5 and rule in ("averaged", "profile"):
         sentences.append(
-            f"With only {count} independent sample{'s' if count > 1 else ''} this rests heavily on "
-            "prior assumptions."
+            f"With only {samples} independent sample{'s' if samples > 1 else ''} this rests "
+            "heavily on prior assumptions."
         )
     return sentences
 
@@ -223,8 +236,8 @@ def _size(plan: Plan) -> list[str]:
     if s.goal == "precision":
         kept = f"with probability {fmt.percent(s.assurance)}" if s.assured else "on average"
         sentences.append(
-            f"An interval with a half-width of {fmt.effect(s.half_width)} {kept} takes "
-            f"{planned(plan)} (planned for {test})."
+            f"The {fmt.percent(s.level)} interval of the effect then has a half-width of at most "
+            f"{fmt.effect(s.half_width)} {kept} with {planned(plan)}; the design is that of {test}."
         )
     elif s.goal == "budget":
         power = plan.row("planning-value").power
@@ -241,11 +254,18 @@ def _size(plan: Plan) -> list[str]:
         sentences.append(f"With {test} at {level}, {_power(plan)} then takes {planned(plan)}.")
     if answer.chance_significant is not None:
         sentences.append(
-            f"Over the whole distribution, negligible effects included, the chance that the study "
-            f"ends significant {_as_predicted(plan)} is {_probability(answer.chance_significant)}; "
+            f"Taken {over_everything(plan)}, the chance that the study ends significant "
+            f"{_as_predicted(plan)} is {_probability(answer.chance_significant)}; "
             f"no study of this design, however large, would exceed {_probability(answer.ceiling)}."
         )
     return sentences
+
+
+def over_everything(plan: Plan) -> str:
+    """What the overall chance of a significant result is taken over."""
+    if plan.settings.rule == "averaged":
+        return "over the whole distribution, negligible effects included"
+    return "over the planning distribution"
 
 
 def _no_size(plan: Plan) -> list[str]:
@@ -273,7 +293,7 @@ def _no_size(plan: Plan) -> list[str]:
 
 def _wrong(plan: Plan) -> list[str]:
     """What the as-printed size would do at the planning value, or at the median without one."""
-    if not plan.consequences or plan.settings.goal == "budget":
+    if not plan.consequences or plan.settings.goal in ("budget", "precision"):
         return []
     c = plan.consequences[0]
     text = (
@@ -282,8 +302,8 @@ def _wrong(plan: Plan) -> list[str]:
     )
     if c.exaggeration is not None:
         text += (
-            f", and its significant estimates would overstate that effect "
-            f"{fmt.factor(c.exaggeration)} times on average"
+            f", and its significant estimates would average {fmt.factor(c.exaggeration)} times "
+            "that effect"
         )
     return [text + "."]
 
@@ -315,15 +335,20 @@ def _moves(plan: Plan, variations: Sequence[Variation], without: Sequence[Variat
 def _literature(plan: Plan) -> str:
     k, samples = len(plan.literature.rows), len(plan.literature.samples)
     text = f"{k} printed result{'s' if k != 1 else ''}"
-    return text if samples == k else f"{text} from {samples} sample{'s' if samples != 1 else ''}"
+    return text if samples == k else f"{text} of {samples} sample{'s' if samples != 1 else ''}"
 
 
 def _purpose(plan: Plan) -> str:
     s = plan.settings
-    if s.goal == "precision":
-        kept = f"with probability {fmt.percent(s.assurance)}" if s.assured else "on average"
-        return f"for an interval with a half-width of {fmt.effect(s.half_width)} {kept}"
-    return f"for {_power(plan)}"
+    if s.goal != "precision":
+        return _power(plan)
+    kept = f"with probability {fmt.percent(s.assurance)}" if s.assured else "on average"
+    return f"an interval with a half-width of at most {fmt.effect(s.half_width)} {kept}"
+
+
+def _given(plan: Plan) -> bool:
+    """Whether the planning value was set and not estimated."""
+    return plan.answer.from_smallest or plan.settings.rule == "fixed"
 
 
 def _as_predicted(plan: Plan) -> str:

@@ -12,7 +12,9 @@ from netsize.planning.tradeoffs import Affordable, Narrow, Target, affordable, n
 from netsize.reported.check import Finding, check
 from netsize.synthesis.weighing import Weighing, weigh
 
-__all__ = ["Material", "gather_material"]
+__all__ = ["MOST_REFITTED", "Material", "gather_material"]
+
+MOST_REFITTED = 40  # samples without each of which the plan is made again
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -60,7 +62,7 @@ def gather_material(plan: Plan) -> Material:
         weighing=_weighing(plan),
         findings=tuple(check(row.result) for row in plan.literature.rows),
         variations=sensitivity(plan),
-        without=leave_one_out(plan),
+        without=leave_one_out(plan) if len(plan.literature.samples) <= MOST_REFITTED else (),
         targets=targets(plan) if plan.settings.rule != "fixed" else (),
         narrow=narrow(plan),
         affordable=affordable(plan),

@@ -27,7 +27,8 @@ from netsize.presentation.report.justification import (
     one_sentence,
     protocol_paragraph,
 )
-from netsize.presentation.report.material import Material
+from netsize.presentation.report.material import MOST_REFITTED, Material
+from netsize.synthesis.weighing import Weighing
 
 __all__ = ["answer", "cautions", "justification", "methods", "moves", "reproducibility"]
 
@@ -100,7 +101,18 @@ def moves(material: Material) -> Section:
     if material.without:
         caption = "One sample left out at a time"
         blocks.append(_variations(plan, "leave-one-out", caption, material.without))
+    elif len(plan.literature.samples) > MOST_REFITTED and material.weighing is not None:
+        blocks.append(Paragraph(text=_influence(material.weighing)))
     return Section(key="moves", heading="What if we are wrong", blocks=tuple(blocks))
+
+
+def _influence(weighing: Weighing) -> str:
+    most = max(weighing.leave_one_out, key=lambda w: abs(w.shift))
+    return (
+        f"With {weighing.samples} samples the plan was not made again without each. The pooled "
+        f"mean moves most without {most.label}, by {fmt.effect(abs(most.shift))} of its standard "
+        "error."
+    )
 
 
 def _variations(plan: Plan, key: str, caption: str, variations: tuple[Variation, ...]) -> Table:

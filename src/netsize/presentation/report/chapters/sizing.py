@@ -6,6 +6,7 @@ from netsize.planning.curves import size_over_effect
 from netsize.planning.plan import Plan
 from netsize.planning.rows import Row
 from netsize.presentation import format as fmt
+from netsize.presentation.figures.evidence import ends_of
 from netsize.presentation.report.chapters.parts import groups_of, picture, size_of
 from netsize.presentation.report.content import (
     Block,
@@ -15,6 +16,7 @@ from netsize.presentation.report.content import (
     Section,
     Table,
 )
+from netsize.presentation.report.justification import over_everything
 from netsize.presentation.report.material import Material
 
 __all__ = ["central_table", "naive", "sizes"]
@@ -71,7 +73,7 @@ def _reading(plan: Plan, row: Row, needed: int | None) -> tuple[Cell, ...]:
     cells: list[Cell] = [
         row.label + (f" ({row.note})" if row.note else ""),
         row.effect,
-        None if row.low is None or row.high is None else (row.low, row.high),
+        None if row.low is None and row.high is None else ends_of(row),
         groups_of(row.sized),
         size_of(row.sized, known=row.effect is not None),
     ]
@@ -229,8 +231,8 @@ def _affordable(material: Material) -> Table:
         ),
         strong=tuple(i for i, a in enumerate(rows) if a.what == "planned n"),
         notes=(
-            "Overall chance: of a significant result as predicted over the whole planning "
-            f"distribution, negligible effects included. Detectable: found with "
+            f"Overall chance: of a significant result as predicted {over_everything(plan)}. "
+            f"Detectable: found with "
             f"{fmt.percent(plan.settings.power)} power."
             + (" Half-width: expected, at the planning value." if wide else ""),
         ),

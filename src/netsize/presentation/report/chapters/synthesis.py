@@ -113,8 +113,9 @@ def belief(material: Material) -> Section:
     """The planning distribution and what the exact selection model concluded."""
     plan = material.plan
     answer, fit = plan.answer, plan.literature.averaged
+    given = "Given that there is an effect, its" if plan.settings.rule == "averaged" else "Its"
     text = (
-        f"The planning distribution is that of {answer.origin}. Given that there is an effect, its "
+        f"The planning distribution is that of {answer.origin}. {given} "
         f"median is {plan.metric.symbol} = {fmt.effect(answer.median)}, its central 95% interval "
         f"{fmt.interval(answer.low, answer.high)}. The posterior probability that the effect is "
         f"negligible is {_probability(answer.probability_negligible)}."
