@@ -67,7 +67,7 @@ def test_the_calibration_shown_is_that_of_the_committed_table():
 
 def _rewrite() -> None:
     text = README.read_text(encoding="utf-8")
-    text = re.sub(r"```text\nworlds .*?```", lambda _: _calibration(), text, flags=re.DOTALL)
+    text = re.sub(r"```text\nworlds\b.*?```", lambda _: _calibration(), text, flags=re.DOTALL)
     made = BLOCK.sub(lambda m: f"```console\n$ {m[1]}\n{_output(m[1])}```", text)
     README.write_text(made, encoding="utf-8")
 
