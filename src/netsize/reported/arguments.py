@@ -43,7 +43,8 @@ def arguments_in(
         if patterns.NUMBER_HERE.match(text, relation.end()) is None:
             return None
         # f(x) = 2.3, t(n) = 4, the half-life t(1/2) = 4 h
-        function = content == "1/2" or not any(c.isdigit() for c in content)
+        letters = all(c.isalpha() or c in " ,+-*|'" for c in content)
+        function = content == "1/2" or (letters and content.lower() not in ("nan", "inf"))
         raise Fault(fault.reason, *place, harmless=function) from None
     if kind in ARGUMENT_COUNT and not (arguments == () and flags):
         if len(arguments) == 1 and kind == "F" and not patterns.RELATION.match(text, inside.end()):
@@ -90,6 +91,7 @@ def argument_numbers(
     content: str, start: int
 ) -> tuple[tuple[float, ...], tuple[int, ...], set[str]]:
     """Degrees of freedom, numbers of participants and remarks from inside brackets."""
+    content = re.sub(r"[ \t]+", " ", content)
     plain = _PLAIN_ARGUMENTS.match(content)
     if plain:
         if plain[2] is None:

@@ -36,6 +36,7 @@ def fields_of(
         item = group.faults[0]
         place = item.marked or (item.start, item.end)
         raise Fault(item.fault or "", *place, harmless=item.harmless and len(group.items) == 1)
+    _refuse_assumption_tests(group, text, begin)
     design, design_origin = _design(tags, defaults)
     context = Context(
         group=group,
@@ -57,6 +58,19 @@ def fields_of(
     _set_direction(fields, tags, defaults, against_words)
     _refuse_impossible(fields)
     return fields
+
+
+def _refuse_assumption_tests(group: Group, text: str, begin: int) -> None:
+    kind = group.primary.kind if group.primary is not None else "p" if group.p() else ""
+    if kind not in ("F", "chi", "rank", "z", "p"):
+        return
+    before = text[max(begin, group.start - 110) : group.start]
+    fit = kind == "chi" and patterns.MODEL_FIT.search(
+        text, max(begin, group.start - 60), group.end + 60
+    )
+    if fit or patterns.ASSUMPTION_BEFORE.search(before):
+        what = "the fit of a model" if fit else "an assumption"
+        raise Fault(f"a test of {what}, no result of the study", harmless=True)
 
 
 def _design(tags: Settings, defaults: Settings) -> tuple[str | None, Origin]:

@@ -74,7 +74,7 @@ def _check_p(result: ReportedResult) -> Iterator[Finding]:
     changes = _side(implied, cut) * _side(printed, cut) < 0
     statistic = _statistic_text(result)
     message = (
-        f"p is printed as {_number(result.p)}, but {statistic} gives p = {_range(implied)}"
+        f"p is printed as {_number(result.p)}, but {statistic} gives p {_range(implied)}"
         f"{' (one-tailed)' if result.tails == 1 else ''}; {_what_would_agree(result, implied, cut)}"
     )
     if changes:
@@ -292,14 +292,18 @@ def _statistic_text(result: ReportedResult) -> str:
 
 
 def _number(number: Printed, *, sign: bool = False) -> str:
-    digits = f"{number.value:.{number.decimals}f}" if number.decimals else f"{number.value:g}"
+    plain = number.decimals and (number.value == 0 or number.value >= 1e-5)
+    digits = f"{number.value:.{number.decimals}f}" if plain else f"{number.value:g}"
     digits = digits.removeprefix("0") if 0 < number.value < 1 else digits
     return digits if number.relation == "=" and not sign else f"{number.relation} {digits}"
 
 
 def _range(ends: Range) -> str:
-    low, high = (f"{end:.3f}".removeprefix("0") if end >= 0.0005 else "< .001" for end in ends)
-    return low if low == high else f"{low} to {high}"
+    if ends[1] < 0.0005:
+        low, high = (f"{end:.1e}" for end in ends)
+    else:
+        low, high = (f"{end:.3f}".removeprefix("0") for end in ends)
+    return f"= {low}" if low == high else f"= {low} to {high}"
 
 
 def _between(low: float, high: float) -> str:

@@ -166,7 +166,7 @@ def _same_test(before: Item, item: Item, gap: str) -> bool:
         return item.kind == "z"
     if before.kind == "slope":
         beta = item.kind == "slope" and item.name[0] == "β" != before.name[0]
-        return beta or item.kind in ("t", "z", "wald")
+        return beta or item.kind in ("t", "z", "wald", "odds")
     if before.kind == "odds":
         return item.kind in ("z", "wald", "chi") and not item.arguments[1:]
     if not _only_connectors(gap):

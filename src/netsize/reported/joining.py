@@ -22,6 +22,7 @@ from netsize.reported.tags import merged
 __all__ = ["joined"]
 
 _PARTS = re.compile(r"[.;:]|\band\b")
+_COMPARED = frozenset(("pair", "odds", "ratio", "chi", "wald", "slope"))
 NOTE = "means, counts or a second statistic beside it describe the same test: read as one result"
 
 
@@ -44,7 +45,7 @@ def joined(groups: list[Group], text: str) -> list[Group]:
 
 def _leading(group: Group) -> Item | None:
     """Which statistic of one comparison says most: adjusted ratio, counts, ratio, chi-square."""
-    if group.primary is None or group.primary.kind not in ("pair", "odds", "ratio", "chi"):
+    if group.primary is None or group.primary.kind not in _COMPARED:
         return group.primary
     ratios = [i for i in group.items if i.kind in ("odds", "ratio") and i.interval]
     adjusted = [i for i in ratios if effect_name(i) not in ("OR", "RR")]

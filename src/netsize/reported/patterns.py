@@ -15,11 +15,13 @@ from netsize.reported.numbers import NUMBER
 __all__ = [
     "ABBREVIATION",
     "AGAINST_WORDS",
+    "ASSUMPTION_BEFORE",
     "BARE_ARGUMENTS",
     "BARE_INTERVAL",
     "BRACKETS",
     "CHAINED",
     "CONNECTORS",
+    "COORDINATE",
     "COUNT_PAIR",
     "CRITICAL_VALUE",
     "DESIGN_WORDS",
@@ -32,6 +34,7 @@ __all__ = [
     "LEVEL_AFTER",
     "LEVEL_BEFORE",
     "MARKS",
+    "MODEL_FIT",
     "NOT_FINITE",
     "NUMBER_HERE",
     "OTHER_HEAD",
@@ -44,6 +47,7 @@ __all__ = [
     "SIZE_EACH",
     "SOFT_BREAK",
     "START",
+    "STRAY_COMMA",
     "TABLE_2X2",
     "TAILS_WORDS",
     "TRAILING",
@@ -72,13 +76,18 @@ _SYMBOLS = (
     ),
     ("ci", "C", r"(?:CI|C\.I\.)(?:[ _-]?[0-9]{2}%?)?(?![A-Za-z])"),
     ("table", "2", r"2[ ]?x[ ]?2"),
-    ("dfafter", "0123456789", rf"{_N}{_W}(?:degrees[ ]of[ ]freedom|d\.f\.|df)(?![\w=])"),
+    (
+        "dfafter",
+        "0123456789",
+        rf"(?:{_N}[ ]and[ ])?{_N}{_W}(?:degrees[ ]of[ ]freedom|d\.f\.|df|DF)(?![\w=])",
+    ),
     ("pair", "0123456789", rf"[0-9]{{1,7}}(?:{_W}/{_W}|[ ](?:of|out[ ]of)[ ])[0-9]{{1,7}}"),
     ("plusminus", "0123456789", r"[0-9]{1,9}(?:[.,][0-9]{1,6})?[ ]?(?:±|\+/-)[ ]?[0-9.]{1,9}"),
     ("percent", "0123456789", _PERCENT + r"[ ](?:of|\([nN])"),
     ("chi", "χWXxCc", r"(?:Wald[ '-]{0,2})?(?:χ|[Cc]hi|[Xx])[ -]?(?:\^?2|sq(?:uared?)?\b)"),
     ("wald", "Ww", r"[Ww]ald(?:'s)?(?![\w])"),
     ("r2", "ΔDdRa", r"(?:Δ|[Dd]elta[ -]?|adj(?:usted|\.)?[ ])?R[ ]?\^?2(?:[ _-]?change)?"),
+    ("r2", "r", r"r[ ]?\^?2(?=[ ]?[=<>])"),
     # "np2" and "hp2" are what copying ηp² from a PDF often leaves
     (
         "eta",
@@ -205,7 +214,7 @@ BARE_ARGUMENTS = re.compile(
 )
 # "=", "<", ">" once or doubled ("= <", "=="), or the word that prose has in its place.
 RELATION = re.compile(
-    r"[ \t]{0,12}(?:([=<>](?:[ ]?[=<>]){0,2}|:(?![/:]))"
+    r"[ \t]{0,12}(?:((?::[ ])?[=<>](?:[ ]?[=<>]){0,2}|:(?![/:]))"
     r"|(?:values?[ ])?(of|was|is|equals|equal[ ]to)(?![\w]))"
     r"[ \t]{0,12}"
 )
@@ -233,7 +242,8 @@ TRAILING = re.compile(
     r"(?P<digits>[0-9])"
     r"|(?P<broken>[ ]\.[ ]?[0-9]|\.[ \n]{1,12}[0-9])"
     r"|(?P<letter>\.[A-Za-z]|[.,][OoIl][0-9])"
-    r"|(?P<list>(?:,[ ]?|[ ])[-+]?[0-9]{0,3}\.[0-9]{1,6}(?![0-9]|[ ]?%))"
+    r"|(?P<list>(?:,[ ]?|[ ])[-+]?[0-9]{0,3}\.[0-9]{1,6}(?![0-9]|[ ]?%)"
+    r"|[ ]and[ ][-+]?[0-9]{0,3}\.[0-9]{1,6}(?=[,.;)\n]|\Z))"
     r"|(?P<spaced>[ ][0-9])"
     r"|(?P<stuck>(?!ns\b)[\w^])"
     r"|(?P<more>[.,:/][0-9])"
@@ -301,7 +311,7 @@ DESIGN_WORDS = re.compile(
     r"(?:[ -](?:t[ -]?tests?|ANOVAs?|analysis[ ]of[ ]variance)\b[^.;:\n]{0,60})?[ :,(-]{0,3}\Z"
 )
 TAILS_WORDS = re.compile(
-    r"(?<![0-9.])(?<![A-Za-oq-z])(one|1|two|2)[ -]?(?:tailed|sided|tail)\b", re.IGNORECASE
+    r"(?<![0-9.])(?<![A-OQ-Za-oq-z])(one|1|two|2)[ -]?(?:tailed|sided|tail)\b", re.IGNORECASE
 )
 # A level of significance is no result: alpha was p < .05; p < .05 was considered significant.
 LEVEL_BEFORE = re.compile(
@@ -315,6 +325,16 @@ LEVEL_AFTER = re.compile(
     r"[ ](?:was|were|is|are)[ ](?:considered|taken|used|set|regarded|deemed|chosen)"
 )
 CRITICAL_VALUE = re.compile(r"\bcritical[ ](?:values?|[tFrz]\b|χ)")
+# z as the third of x, y, z: a place in the brain or in a room
+COORDINATE = re.compile(r"\b[yY][ ]?(?:=[ ]?-?[0-9.]{1,6}[ ]?)?(?:mm)?[,;][ ]?(?:and[ ])?\Z")
+# tests of what a test presupposes, or of the fit of a model, are no results of a study
+ASSUMPTION_BEFORE = re.compile(
+    r"\b(?:Levene|Mauchly|Shapiro|Kolmogorov|Bartlett|Brown-Forsythe|Box's[ ]M|Hosmer)"
+    r"[^.;\n]{0,90}\Z"
+)
+# t(38), = 2.31
+STRAY_COMMA = re.compile(r",[ ]?=?(?=[ ]?-?[0-9]{0,4}\.[0-9]{1,6}(?:[,;)\n]|\Z))")
+MODEL_FIT = re.compile(r"\b(?:RMSEA|CFI|TLI|SRMR)\b")
 AGAINST_WORDS = re.compile(
     r"(?:contrary|opposite)[ ](?:to[ ])?(?:what[ ](?:was|we)[ ])?(?:the[ ]|our[ ])?"
     r"(?:prediction|predicted|hypothes|expectation|expected)"

@@ -66,11 +66,10 @@ def _df(match: re.Match[str], text: str) -> Item | None:
 
 
 def _df_after(match: re.Match[str], text: str) -> Item | None:
-    number = re.match(r"[0-9.,]+", match[0])
-    value = decimal(number[0])[0] if number else 0.0
-    if value <= 0:
+    numbers = tuple(decimal(n)[0] for n in re.findall(r"[0-9]+(?:[.,][0-9]+)?", match[0]))
+    if any(n <= 0 for n in numbers):
         raise Fault("degrees of freedom must be above 0")
-    return Item("df", "df", match.start(), match.end(), arguments=(value,))
+    return Item("df", "df", match.start(), match.end(), arguments=numbers)
 
 
 def _size(match: re.Match[str], text: str) -> Item | None:

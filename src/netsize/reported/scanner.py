@@ -63,6 +63,8 @@ def _statistic(kind: str, match: re.Match[str], text: str) -> Item | None:
     start, at = match.span()
     if kind == "p" and _is_level(text, match):
         return None
+    if kind == "z" and patterns.COORDINATE.search(text, max(start - 16, 0), start):
+        return None
     plain = patterns.PLAIN_VALUE.match(text, at)
     if plain and len(plain.groups()) - plain.groups().count(None) - 2 in _PLAIN_COUNT.get(
         kind, (0,)
@@ -105,7 +107,8 @@ def _statistic(kind: str, match: re.Match[str], text: str) -> Item | None:
         if not bracketed or kind == "p":
             return None
         return _without_relation(kind, match, text, at, arguments, sizes, flags)
-    if relation[1] == ":" and not bracketed:
+    named = worded or match[0][1:] == "-value"  # "p-value: 0.0275", "F-statistic: 5.12"
+    if relation[1] == ":" and not bracketed and not named:
         return None
     number, end = printed_number(text, relation.end(), relation[1] or "=", kind, match.start())
     if number is None:
@@ -159,6 +162,8 @@ def _without_relation(
 ) -> Item | None:
     """`t(38) 2.31`: the equals sign was lost; anything else has no value."""
     start = match.start()
+    stray = patterns.STRAY_COMMA.match(text, at)
+    at = stray.end() if stray else at
     lost = patterns.NUMBER_HERE.match(text, at)
     if lost and re.search(r"[.,][0-9]", lost[1]) and arguments:
         number, end = printed_number(text, at, "=", kind, start)
