@@ -4,14 +4,13 @@ from __future__ import annotations
 
 import hashlib
 import shlex
-import sys
-from contextlib import AbstractContextManager, nullcontext
 from pathlib import Path
 from typing import Annotated, Any
 
 import typer
 
 from netsize.cli.options import SkipUnread, Source, planning_options, spelled
+from netsize.cli.waiting import waiting
 from netsize.errors import SettingError
 
 __all__ = ["report"]
@@ -90,7 +89,7 @@ def _made(source: str | None, skip_unread: bool, choices: dict[str, Any]) -> Any
     reading = load(source)
     parts = ["netsize", "report", Path(source).name if source and named else "-"]
     parts += spelled(choices) + (["--skip-unread"] if skip_unread else [])
-    with _waiting():
+    with waiting("fitting, then again under other assumptions"):
         return make(
             reading,
             skip_unread=skip_unread,
@@ -101,15 +100,6 @@ def _made(source: str | None, skip_unread: bool, choices: dict[str, Any]) -> Any
             command=shlex.join(parts),
             **choices,
         )
-
-
-def _waiting() -> AbstractContextManager[object]:
-    """Something that moves on a terminal while the fits run; nothing in a pipe."""
-    if not sys.stderr.isatty():
-        return nullcontext()
-    from rich.console import Console
-
-    return Console(stderr=True).status("Fitting, then again under other assumptions ...")
 
 
 def _alone(
@@ -134,7 +124,7 @@ def _check(path: str) -> None:
     from netsize.presentation.report import differences, load_document
 
     document = load_document(path)
-    with _waiting():
+    with waiting("recomputing"):
         found = differences(document)
     made = f"made with netsize {document.version}, recomputed with {netsize.__version__}"
     if not found:
