@@ -47,8 +47,10 @@ class Group:
 
     def p(self) -> Item | None:
         """The p printed for the test: a number where one stands beside "n.s."."""
-        found = self.every("p")
-        return next((i for i in found if i.name != NOT_SIGNIFICANT), found[0] if found else None)
+        found = self.first("p")
+        if found is None or found.name != NOT_SIGNIFICANT:
+            return found
+        return next((i for i in self.every("p") if i.name != NOT_SIGNIFICANT), found)
 
     def every(self, kind: str) -> list[Item]:
         """All items of this kind, in order."""

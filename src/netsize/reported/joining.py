@@ -29,13 +29,13 @@ NOTE = "means, counts or a second statistic beside it describe the same test: re
 def joined(groups: list[Group], text: str) -> list[Group]:
     """`groups` of one line with those of one test put together, in order of place."""
     found: list[Group] = []
-    for group in groups:
-        if (
-            found
-            and _one_test(found[-1], group, text)
-            and not _belongs_to_next(found[-1], group, groups)
-        ):
-            _take_in(found[-1], group)
+    if len(groups) == 1:  # most lines
+        groups[0].primary = _leading(groups[0])
+        return groups
+    for group, after in zip(groups, [*groups[1:], None], strict=True):
+        last = found[-1] if found else None
+        if last and _one_test(last, group, text) and not _belongs_to_next(last, group, after):
+            _take_in(last, group)
         else:
             found.append(group)
     for group in found:
@@ -57,19 +57,20 @@ def _one_test(a: Group, b: Group, text: str) -> bool:
         return False
     if _counts_with_ratio(a, b) and not _PARTS.search(text, a.end, min(b.start, a.end + 60)):
         return b.start - a.end < 60
-    return any(
-        same(first, second)
-        for same in (_means_and_test, _counts_and_summary, _equal_tests)
-        for first, second in ((a, b), (b, a))
+    return (
+        _equal_tests(a, b)
+        or _means_and_test(a, b)
+        or _means_and_test(b, a)
+        or _counts_and_summary(a, b)
+        or _counts_and_summary(b, a)
     )
 
 
-def _belongs_to_next(a: Group, b: Group, groups: list[Group]) -> bool:
+def _belongs_to_next(a: Group, b: Group, after: Group | None) -> bool:
     """Means between two tests describe the later one, unless only the earlier fits."""
     if b.primary is not None or a.primary is None:
         return False
-    after = groups[groups.index(b) + 1 :]
-    return bool(after) and _means_and_test(b, after[0])
+    return after is not None and _means_and_test(b, after)
 
 
 def _take_in(group: Group, other: Group) -> None:

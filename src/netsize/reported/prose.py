@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections import Counter
 from typing import Any
 
 from netsize.reported import patterns
@@ -82,13 +83,14 @@ def _named(
     built: list[tuple[Group, dict[str, Any]]], line: Line, source: Source
 ) -> list[ReportedResult]:
     names = _labels([group for group, _ in built], line, source)
+    times = Counter(names) if len(names) > 1 else {}
     results = []
     for (group, fields), name in zip(built, names, strict=True):
         sample = group.settings.get("sample") or line.settings.get("sample")
         if len(built) > 1 and sample is None:
             if name is None:
                 fields["notes"] = (*fields.get("notes", ()), APART)
-            elif names.count(name) > 1:
+            elif times[name] > 1:
                 fields["notes"] = (*fields.get("notes", ()), SHARED)
         results.append(
             source.result(
