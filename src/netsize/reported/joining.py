@@ -10,6 +10,7 @@ from __future__ import annotations
 
 import math
 import re
+from itertools import zip_longest
 
 from netsize.reported.effect_names import effect_name
 from netsize.reported.faults import Fault
@@ -29,10 +30,7 @@ NOTE = "means, counts or a second statistic beside it describe the same test: re
 def joined(groups: list[Group], text: str) -> list[Group]:
     """`groups` of one line with those of one test put together, in order of place."""
     found: list[Group] = []
-    if len(groups) == 1:  # most lines
-        groups[0].primary = _leading(groups[0])
-        return groups
-    for group, after in zip(groups, [*groups[1:], None], strict=True):
+    for group, after in zip_longest(groups, groups[1:]):
         last = found[-1] if found else None
         if last and _one_test(last, group, text) and not _belongs_to_next(last, group, after):
             _take_in(last, group)
