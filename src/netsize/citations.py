@@ -410,4 +410,31 @@ _SOURCES = (
         "Software, 28, 145-149.",
         "Roots behind exact intervals.",
     ),
+    Source(
+        "Perugini et al. 2014",
+        "Perugini, M., Gallucci, M., & Costantini, G. (2014). Safeguard power as a protection "
+        "against imprecise power estimates. Perspectives on Psychological Science, 9, 319-332.",
+        "Planning for a lower limit of the pooled mean.",
+    ),
+    Source(
+        "Taylor & Muller 1996",
+        "Taylor, D. J., & Muller, K. E. (1996). Bias in linear model power and sample size "
+        "calculation due to estimating noncentrality. Communications in Statistics - Theory and "
+        "Methods, 25, 1595-1610.",
+        "Bound of one study's effect given that it is significant.",
+    ),
+    Source(
+        "Anderson et al. 2017",
+        "Anderson, S. F., Kelley, K., & Maxwell, S. E. (2017). Sample-size planning for more "
+        "accurate statistical power: A method adjusting sample effect sizes for publication bias "
+        "and uncertainty. Psychological Science, 28, 1547-1562.",
+        "Planning from the bound of one significant study.",
+    ),
+    Source(
+        "Peters et al. 2008",
+        "Peters, J. L., Sutton, A. J., Jones, D. R., Abrams, K. R., & Rushton, L. (2008). "
+        "Contour-enhanced meta-analysis funnel plots help distinguish publication bias from other "
+        "causes of asymmetry. Journal of Clinical Epidemiology, 61, 991-996.",
+        "Regions of significance in the funnel plot.",
+    ),
 )

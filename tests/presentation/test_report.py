@@ -11,7 +11,7 @@ import pytest
 import netsize
 from netsize.errors import ReadingError
 from netsize.presentation.figures import draw
-from netsize.presentation.report import checking, files
+from netsize.presentation.report import checking, citing, files
 from netsize.presentation.report.cells import text_of
 from netsize.presentation.report.codec import decode, encode
 from netsize.presentation.report.content import Document, Picture, Table
@@ -324,3 +324,20 @@ def test_notebooks_show_tables_with_escaped_labels(name):
     assert "<table" in shown
     if name in ("read", "effects"):
         assert "&lt;b&gt;Lab&lt;/b&gt;" in shown
+
+
+def test_every_condition_of_citing_names_a_source():
+    """A source renamed in the list of sources would otherwise be cited in every report."""
+    keys = {source.key for source in netsize.sources()}
+    assert set(citing.CONDITIONS) <= keys
+
+
+def test_cites_what_enters(documents):
+    def cited(name):
+        section = next(s for s in documents(name, **CASES[name]).sections if s.key == "methods")
+        return " ".join(section.blocks[0].items)
+
+    assert "Olkin, I., & Pratt" in cited("correlations")
+    assert "Olkin, I., & Pratt" not in cited("finite")
+    assert "Composites of several results" in cited("finite")
+    assert "Composites of several results" not in cited("f-tests")

@@ -56,7 +56,7 @@ _ELLIPSIS = "…"
 
 
 def axes(
-    ax: Axes | None, *, height: float, left: float = 2.0, bottom: float = 9.0, top: float = 2.0
+    ax: Axes | None, *, height: float, left: float = 2.0, bottom: float = 10.0, top: float = 2.0
 ) -> Axes:
     """`ax` itself, or axes on a new figure one column wide; margins hold what stands outside."""
     if ax is None:
