@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from typing import Any
 
 from netsize.reported import patterns
@@ -36,7 +37,7 @@ def fields_of(
         item = group.faults[0]
         place = item.marked or (item.start, item.end)
         raise Fault(item.fault or "", *place, harmless=item.harmless and len(group.items) == 1)
-    _refuse_assumption_tests(group, text, begin)
+    _refuse_other_purposes(group, text, begin)
     design, design_origin = _design(tags, defaults)
     context = Context(
         group=group,
@@ -51,7 +52,7 @@ def fields_of(
     p = group.p()
     fields["p"] = p.number if p is not None else None
     fields["also"] = also(group, fields)
-    fields["tails"] = _tails(group, tags, defaults, text)
+    fields["tails"] = _tails(group, tags, defaults, text, begin)
     fields["correlation"] = tags.get("correlation", defaults.get("correlation"))
     fields["cut"] = tags.get("cut", defaults.get("cut"))
     fields["left_out"] = tags.get("left_out")
@@ -60,7 +61,14 @@ def fields_of(
     return fields
 
 
-def _refuse_assumption_tests(group: Group, text: str, begin: int) -> None:
+def _refuse_other_purposes(group: Group, text: str, begin: int) -> None:
+    """What is printed like a result and is none: plans for a sample size, tests of assumptions."""
+    effect = group.first("smd", "eta", "r2") if group.primary is None else group.primary
+    planned = effect is not None and effect.kind in _EFFECTS and not effect.arguments
+    if effect is not None and planned:
+        before = text[max(begin, effect.start - 110) : effect.start]
+        if patterns.PLANNED_BEFORE.search(before):
+            raise Fault("an effect that a study was planned for, no result", harmless=True)
     kind = group.primary.kind if group.primary is not None else "p" if group.p() else ""
     if kind not in ("F", "chi", "rank", "z", "p"):
         return
@@ -71,6 +79,9 @@ def _refuse_assumption_tests(group: Group, text: str, begin: int) -> None:
     if fit or patterns.ASSUMPTION_BEFORE.search(before):
         what = "the fit of a model" if fit else "an assumption"
         raise Fault(f"a test of {what}, no result of the study", harmless=True)
+
+
+_EFFECTS = frozenset(("smd", "eta", "r2", "r", "odds"))
 
 
 def _design(tags: Settings, defaults: Settings) -> tuple[str | None, Origin]:
@@ -95,7 +106,7 @@ def _preceding_design(group: Group, text: str, begin: int) -> str | None:
     return "paired" if words["paired"] else "one-sample" if words["one"] else "two-groups"
 
 
-def _tails(group: Group, tags: Settings, defaults: Settings, text: str) -> int:
+def _tails(group: Group, tags: Settings, defaults: Settings, text: str, begin: int) -> int:
     if "tails" in tags:
         return int(tags["tails"])
     for item in group.items:
@@ -103,14 +114,24 @@ def _tails(group: Group, tags: Settings, defaults: Settings, text: str) -> int:
             return 1
         if "two-tailed" in item.flags:
             return 2
-    around = text[max(group.start - 20, 0) : group.end + 25]
+    around = text[max(group.start - 20, begin) : group.end + 40]
     if "critical" in around and patterns.CRITICAL_VALUE.search(around):
-        raise Fault("a critical value is no result")
+        raise Fault("a critical value is no result", harmless=True)
     if "tail" in around or "sided" in around:
-        said = patterns.TAILS_WORDS.search(around.split("\n")[0] if "\n" not in around else around)
+        said = _tails_said(group, text, begin)
         if said:
             return 1 if said[1].lower() in ("one", "1") else 2
     return int(defaults.get("tails", 2))
+
+
+def _tails_said(group: Group, text: str, begin: int) -> re.Match[str] | None:
+    """Words within the test or right after it, unless they open the next one; else before it."""
+    line_end = text.find("\n", group.end, group.end + 25)
+    end = line_end if line_end >= 0 else group.end + 25
+    said = patterns.TAILS_WORDS.search(text, group.start, end)
+    if said and (said.start() < group.end or not patterns.TEST_FOLLOWS.match(text, said.end())):
+        return said
+    return patterns.TAILS_WORDS.search(text, max(group.start - 20, begin), group.start)
 
 
 def _set_direction(

@@ -40,6 +40,7 @@ __all__ = [
     "OTHER_HEAD",
     "PERCENT_PAIR",
     "PLAIN_VALUE",
+    "PLANNED_BEFORE",
     "RELATION",
     "SAMPLE_WORDS",
     "SENTENCE_END",
@@ -50,6 +51,7 @@ __all__ = [
     "STRAY_COMMA",
     "TABLE_2X2",
     "TAILS_WORDS",
+    "TEST_FOLLOWS",
     "TRAILING",
     "VALUE_WORD",
     "WORD",
@@ -334,6 +336,13 @@ ASSUMPTION_BEFORE = re.compile(
 )
 # t(38), = 2.31
 STRAY_COMMA = re.compile(r",[ ]?=?(?=[ ]?-?[0-9]{0,4}\.[0-9]{1,6}(?:[,;)\n]|\Z))")
+PLANNED_BEFORE = re.compile(
+    r"(?:[Pp]ower[ ]analys[ie]s|%[ ]power|statistical[ ]power|"
+    r"power(?:ed)?[ ](?:of|to|for)\b|to[ ]detect|[Dd]etectable|[Ss]mallest[ ]effect|[Ss]ensitivity[ ]analysis|a[ ]priori)"
+    r"[^.;\n]{0,60}\Z"
+)
+# "one-tailed t(40)": the words belong to what follows
+TEST_FOLLOWS = re.compile(r"[ ]?(?:[a-z-]{1,14}[ ]){0,2}[tFrzpP][ ]?[(=<>0-9]")
 MODEL_FIT = re.compile(r"\b(?:RMSEA|CFI|TLI|SRMR)\b")
 AGAINST_WORDS = re.compile(
     r"(?:contrary|opposite)[ ](?:to[ ])?(?:what[ ](?:was|we)[ ])?(?:the[ ]|our[ ])?"
@@ -420,6 +429,8 @@ SOFT_BREAK = re.compile(
     rf"|(?:(?<=[,;]\n)|(?<=[,;][ ]\n))(?=[ \t]{{0,20}}(?!{_STARTS_OWN})\S)"
     r"|(?=[ \t]{0,20}(?:\)|[=<>][ ]?[<>]?[ ]?-?[0-9.]))"
     r"|(?<=\b[tTFrzZpPdgN]\n)(?=[ \t]{0,20}[(\[=<0-9])"
+    r"|(?<=[0-9)*]\n)(?=(?:[pP]|d|g|Cohen's[ ]d)[ ]?[=<>][ ]?[<]?[ ]?-?[0-9.,]{1,8}"
+    r"[ \t]{0,9}(?:\n|\Z))"
     rf"|(?<=[a-z]{{3}}\n)(?=[ \t]{{0,20}}(?!{_STARTS_OWN})[a-z]{{2,20}}[, ])"
     r"|(?<=[ \n](?:and|was|for)\n)(?=[ \t]{0,20}[a-zA-Z0-9]))"
 )

@@ -15,6 +15,11 @@ from netsize.reported.tags import parse_settings
 __all__ = ["PIECES"]
 
 
+# [F(1, 56) = 5.12, p = .028]: square brackets round a statistic
+_STATISTIC = re.compile(
+    r"(?<!\w)(?:[tFrzPpdgMUW]|[XχΧ]\^?2|[ηωβ][^ =<>]{0,3}|OR|HR|RR|CI)"
+    r"[ ]?(?:\([0-9dN][^()]{0,30}\)|[0-9]{1,4}(?:, ?[0-9]{1,4})?)?[ ]?[=<>]"
+)
 _NO_SETTING = re.compile(r"[\s0-9.,;:%+-]*\Z")
 
 
@@ -27,7 +32,12 @@ def _tag(match: re.Match[str], text: str) -> Item | None:
     content = text[start + 1 : end]
     if len(content.strip()) < 2 or _NO_SETTING.match(content):
         return None  # an interval, a footnote letter or the number of a reference
-    settings = parse_settings(content, start + 1)
+    try:
+        settings = parse_settings(content, start + 1)
+    except Fault:
+        if _STATISTIC.search(content):
+            return None
+        raise
     return Item("tag", "tag", start, end + 1, settings=settings)
 
 
@@ -113,6 +123,7 @@ def _pair(match: re.Match[str], text: str) -> Item | None:
             f'these may be fractions; for counts of people write "counts: {found[0][:60]}"',
             match.start(),
             found.end(),
+            harmless=numbers[0] > numbers[1] or numbers[2] > numbers[3],
         )
     start = before + named.start() if named else match.start()
     return _counts_item(numbers, start, found.end())
@@ -180,9 +191,14 @@ def _other(match: re.Match[str], text: str) -> Item | None:
     )
 
 
+_TEST_WORD = re.compile(
+    r"chi|test|pair|obs|welch|stud|stat|val|ratio|anova|ind|change", re.IGNORECASE
+)
+
+
 def _is_word(name: str) -> bool:
-    """Words such as "best(38)"; Q, H, minF' and the like are statistics of other kinds."""
-    return len(name) > 2 and name.lower() != "chi" and name.isalpha() and name[1:].islower()
+    """Words such as "best(38)"; Q, H, minF', tpaired and the like are or may be statistics."""
+    return len(name) > 2 and name.isalpha() and name[1:].islower() and not _TEST_WORD.search(name)
 
 
 PIECES: dict[str, Callable[[re.Match[str], str], Item | None]] = {

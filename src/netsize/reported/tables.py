@@ -18,7 +18,7 @@ _DELIMITERS = ("\t", ";", "|", ",")
 # a header has no "=": this passes over nearly every line of statistics at once
 _CANDIDATE = re.compile(r"(?m)^[^\n=]*[,;\t|][^\n=]*$")
 _QUOTED = re.compile(r'[ ]*"((?:[^"]|""){0,20000})"[ ]*(?=[,;\t|\n]|\Z)')
-_RULE = re.compile(r"[ \t]*\|?[ \t]*:?-{2,}:?[ \t]*(?:\|[ \t]*:?-{2,}:?[ \t]*)*\|?[ \t]*\Z")
+_RULE = re.compile(r"[ \t]*\|?[ \t]*:?-{1,}:?[ \t]*(?:\|[ \t]*:?-{1,}:?[ \t]*)*\|?[ \t]*\Z")
 
 
 @dataclass(frozen=True, slots=True)
