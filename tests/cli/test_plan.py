@@ -65,7 +65,7 @@ def test_lists_are_joined_by_commas(capsys):
         (["--cut-points", "0.05;0.1"], "--cut-points"),
         (["--corrections", "magic"], "magic"),
         (["--design", "nothing"], "--design"),
-        (["--within-pair", "3"], "correlation"),
+        (["--within-pair", "3"], "--within-pair"),
     ],
 )
 def test_bad_values_end_with_exit_code_3_and_one_message(arguments, named, capsys):

@@ -95,11 +95,8 @@ def gather(
 ) -> Literature:
     """Pool and fit the results of one effect table."""
     rows, metric = table.rows, table.metric
-    weights = dependence_weights(
-        [row.sample for row in rows], correlation=settings.within_sample_correlation
-    )
+    weights, priors = _weights(table, settings), settings.priors(metric)
     evidence = [row.evidence for row in rows]
-    priors = settings.priors(metric)
     pooled = None
     if any(row.estimate is not None for row in rows):
         arrays = from_table(table, within_sample_correlation=settings.within_sample_correlation)
@@ -110,7 +107,7 @@ def gather(
             interval=settings.interval,
             level=settings.level,
         )
-    averaged = fit_averaged(evidence, weights=weights, metric=metric, priors=priors)
+    averaged = fit_evidence(table, settings)
     without_selection = log_evidence(
         evidence, weights=weights, metric=metric, priors=priors, selection=False
     )
@@ -121,6 +118,22 @@ def gather(
         averaged=averaged,
         profile=fit_profile(evidence, weights=weights, metric=metric, priors=priors),
         log_bayes_factor_selection=averaged.log_evidence - without_selection,
+    )
+
+
+def fit_evidence(table: EffectTable, settings: PlanSettings) -> AveragedFit:
+    """The averaged reading alone."""
+    return fit_averaged(
+        [row.evidence for row in table.rows],
+        weights=_weights(table, settings),
+        metric=table.metric,
+        priors=settings.priors(table.metric),
+    )
+
+
+def _weights(table: EffectTable, settings: PlanSettings) -> Array:
+    return dependence_weights(
+        [row.sample for row in table.rows], correlation=settings.within_sample_correlation
     )
 
 

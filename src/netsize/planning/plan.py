@@ -13,10 +13,10 @@ from netsize.effect_sizes.metrics import Metric
 from netsize.numerics.grid import GridDistribution
 from netsize.planning.answer import Answer, answer
 from netsize.planning.consequences import Consequence, Habit, consequences, habits
-from netsize.planning.evidence import Literature, gather, table_of
+from netsize.planning.evidence import Literature, fit_evidence, gather, table_of
 from netsize.planning.remarks import assumptions, warnings
 from netsize.planning.rows import Row, plan_rows
-from netsize.planning.rules import planning_distribution
+from netsize.planning.rules import of_reading, planning_distribution
 from netsize.planning.settings import PlanSettings
 from netsize.planning.study import METRIC_OF, metric_for, study_for
 from netsize.reported.records import Reading, ReportedResult
@@ -173,7 +173,9 @@ def plan(
     study, study_notes = study_for(table, settings)
     literature = gather(table, settings, left_out=left_out)
     scale = METRIC_OF[study.design.name][1]
-    answered = _answer(literature, settings, study)
+    distribution, origin = planning_distribution(literature, settings)
+    negligible = literature.averaged.probability_negligible
+    answered = _answer(distribution, origin, negligible, table.metric, settings, study)
     corrections = (
         correct(
             table,
@@ -206,15 +208,29 @@ def answer_again(
 ) -> Answer:
     """The answer alone from other results or settings, for the same study and metric."""
     table, _ = table_of(results, settings, metric=metric.name, skip_unread=False)
-    return _answer(gather(table, settings), settings, study)
+    if settings.rule == "averaged":  # the other readings are not needed then
+        fit = fit_evidence(table, settings)
+        distribution, origin = of_reading(fit, settings)
+        negligible = fit.probability_negligible
+    else:
+        literature = gather(table, settings)
+        distribution, origin = planning_distribution(literature, settings)
+        negligible = literature.averaged.probability_negligible
+    return _answer(distribution, origin, negligible, metric, settings, study)
 
 
-def _answer(literature: Literature, settings: PlanSettings, study: Study) -> Answer:
-    distribution, origin = planning_distribution(literature, settings)
+def _answer(
+    distribution: GridDistribution,
+    origin: str,
+    negligible: float,
+    metric: Metric,
+    settings: PlanSettings,
+    study: Study,
+) -> Answer:
     return answer(
-        distribution.mapped(literature.table.metric.shown),
+        distribution.mapped(metric.shown),
         origin,
-        probability_negligible=literature.averaged.probability_negligible,
+        probability_negligible=negligible,
         study=study,
         settings=settings,
         scale=METRIC_OF[study.design.name][1],

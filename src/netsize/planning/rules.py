@@ -18,9 +18,11 @@ from netsize.numerics.grid import GridDistribution
 from netsize.planning.evidence import Literature
 from netsize.planning.settings import PlanSettings
 from netsize.synthesis.precise import centre, spread
+from netsize.synthesis.selection_averaged import AveragedFit
+from netsize.synthesis.selection_profile import ProfileFit
 from netsize.synthesis.selection_single import conditional_bound
 
-__all__ = ["exact_confidence", "planning_distribution"]
+__all__ = ["exact_confidence", "of_reading", "planning_distribution"]
 
 _CELLS = 2401
 
@@ -45,7 +47,15 @@ def planning_distribution(
     if settings.rule == "single-study":
         row = _largest_significant(literature)
         return _of_single(row, metric), f"{row.label} alone, given that it is significant"
-    fit = literature.averaged if settings.rule == "averaged" else literature.profile
+    if settings.rule == "averaged":
+        return of_reading(literature.averaged, settings)
+    return of_reading(literature.profile, settings)
+
+
+def of_reading(
+    fit: AveragedFit | ProfileFit, settings: PlanSettings
+) -> tuple[GridDistribution, str]:
+    """The distribution of the target under one reading of the selection model."""
     reading = f"the exact selection model, {settings.rule} reading"
     if settings.target == "mean":
         return fit.mean, f"the mean effect under {reading}"

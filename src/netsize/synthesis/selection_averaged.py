@@ -48,29 +48,46 @@ class AveragedFit:
     Attributes
     ----------
     mean : of μ given that there is an effect. new_study : of θ ~ N(μ, τ²) for the new study, given
-        an effect. heterogeneity : of τ. printing : of each ω_j, given an effect.
+        an effect.
     probability_negligible : posterior probability of μ = τ = 0.
     log_bayes_factor : natural logarithm of the evidence for an effect over that for none.
     log_evidence : of the whole model, both components averaged over their priors.
-    unprinted : of the share of conducted results that never got printed, given an effect.
-    shrunken : for each result the distribution of its own true effect; None where an inequality
-        straddles p-bands.
     error : how far the watched numbers moved in the last refinement of the grids.
     rested : whether that is within the tolerance asked.
+    posterior, literature : what the properties are computed from, at each call.
     """
 
     priors: Priors
     mean: GridDistribution
     new_study: GridDistribution
-    heterogeneity: GridDistribution
-    printing: tuple[GridDistribution, ...]
     probability_negligible: float
     log_bayes_factor: float
     log_evidence: float
-    unprinted: GridDistribution
-    shrunken: tuple[GridDistribution | None, ...]
     error: float
     rested: bool
+    posterior: Posterior
+    literature: Literature
+
+    @property
+    def heterogeneity(self) -> GridDistribution:
+        """Distribution of τ, given an effect."""
+        lattice = self.posterior.lattice
+        return _along(self.posterior.joint.sum(axis=(1, 2)), lattice.tau_edges)
+
+    @property
+    def printing(self) -> tuple[GridDistribution, ...]:
+        """Distribution of each ω_j, given an effect."""
+        return _printing(self.posterior)
+
+    @property
+    def unprinted(self) -> GridDistribution:
+        """Distribution of the share of conducted results never printed, given an effect."""
+        return _unprinted(self.posterior, self.literature)
+
+    @property
+    def shrunken(self) -> tuple[GridDistribution | None, ...]:
+        """Distribution of each true effect; None where an inequality straddles p-bands."""
+        return _shrunken(self.posterior, self.literature, self.new_study.edges)
 
 
 def fit_averaged(
@@ -106,15 +123,13 @@ def fit_averaged(
         priors=priors,
         mean=mean,
         new_study=new,
-        heterogeneity=_along(posterior.joint.sum(axis=(1, 2)), posterior.lattice.tau_edges),
-        printing=_printing(posterior),
         probability_negligible=share,
         log_bayes_factor=posterior.log_evidence - posterior.log_null,
         log_evidence=total_evidence(posterior, priors),
-        unprinted=_unprinted(posterior, literature),
-        shrunken=_shrunken(posterior, literature, new.edges),
         error=error,
         rested=rested,
+        posterior=posterior,
+        literature=literature,
     )
 
 
