@@ -37,7 +37,8 @@ def smallest_integer(
     Notes
     -----
     A bracket is doubled outward from the guess, then halved; about 2 log₂ of the distance between
-    guess and answer evaluations. Every returned n was checked true, and n-1 false where it is in the range.
+    guess and answer evaluations. Every returned n was checked true, and n-1 false where it is in
+    the range.
     """
     rest = [np.asarray(a) for a in np.broadcast_arrays(*arguments)]
     shape = rest[0].shape
