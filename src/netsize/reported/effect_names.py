@@ -36,10 +36,9 @@ def effect_name(item: Item) -> str:
 
 def _ratio_name(symbol: str) -> str:
     """OR, RR, HR or IRR, with "a" before it where it is adjusted."""
-    for name, starts in (("OR", "o"), ("IRR", "ir"), ("HR", "h"), ("RR", "r")):
-        if symbol.removeprefix("a").startswith(starts):
-            return f"a{name}" if symbol[0] == "a" else name
-    return symbol
+    bare = symbol.removeprefix("adjusted").removeprefix("adj.").removeprefix("a")
+    kinds = {"o": "OR", "i": "IRR", "h": "HR", "r": "RR"}
+    return f"{'a' if symbol[0] == 'a' else ''}{kinds[bare[0]]}"
 
 
 def _mean_difference_name(symbol: str) -> str:

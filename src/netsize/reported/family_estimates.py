@@ -43,7 +43,10 @@ def from_odds(context: Context) -> Fields:
     if item.number is None or item.number.value <= 0:
         raise Fault("an odds ratio is above 0")
     if item.interval is None:
-        raise Fault("an odds ratio needs its interval: OR = 1.85, 95% CI [1.10, 3.10]")
+        raise Fault(
+            "an odds ratio needs its interval: OR = 1.85, 95% CI [1.10, 3.10]",
+            harmless=item.number.value == 1,  # the category of reference
+        )
     if item.interval.low <= 0:
         raise Fault("the interval of an odds ratio is above 0")
     if not item.interval.low <= item.number.value <= item.interval.high:

@@ -22,6 +22,9 @@ __all__ = ["Group", "Line", "group_items"]
 _LONGEST_GAP = 100
 _PLAIN_GAPS = frozenset((", ", "; ", " ", ",", " ("))
 _STOP_BEFORE = re.compile(r"(?<!vs)[.!?][)\]\"']?[ \t]{1,12}\Z")
+# "t(38) = 2.31; [paired] t(19) = 2.1"
+_PARTED = re.compile(r";|[.][ ]")
+_OPENS_NEXT = re.compile(r"[ ]?(?:[a-z]{1,12}[ ]){0,2}(?:[tFrz]|χ)[ ]?[(0-9=]")
 _MOST_ITEMS = 40  # no test comes with more numbers; keeps the time linear
 # kinds of which a group may hold several
 _MANY = frozenset(("size", "mean", "sd", "se", "ci", "df"))
@@ -99,7 +102,7 @@ def group_items(items: Iterable[Item], text: str) -> Iterator[Line]:
 def _place(item: Item, line: Line, text: str) -> None:
     group = line.groups[-1] if line.groups else None
     if item.kind == "tag":
-        _place_tag(item, line, group)
+        _place_tag(item, line, group, text)
         return
     if item.kind == "plural" and group is not None and group.primary is not None:
         return  # "ps < .05" beside the tests that it sums up
@@ -111,8 +114,13 @@ def _place(item: Item, line: Line, text: str) -> None:
         group.primary = _leading(group.primary, item)
 
 
-def _place_tag(item: Item, line: Line, group: Group | None) -> None:
+def _place_tag(item: Item, line: Line, group: Group | None, text: str) -> None:
     line.tags.append(item)
+    if group is not None and item.fault is None:
+        parted = _PARTED.search(text, group.end, min(item.start, group.end + _LONGEST_GAP))
+        if parted and _OPENS_NEXT.match(text, item.end):
+            item.fault = "this setting stands between two statistics; put it right after its own"
+            item.marked = (item.start, item.end)
     if group is not None and any(i.kind != "size" for i in group.items):
         group.settings = merged(group.settings, item.settings or {})
         if item.fault:

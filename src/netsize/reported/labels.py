@@ -30,8 +30,9 @@ _NAME = r"(?:(?:van|von|de|der|den|la|le|di)[ ]){0,3}[^\W\d_a-z][\w'-]{1,24}"
 _YEAR = r"(?:1[89]|20)[0-9]{2}[a-z]?"
 _AUTHORS = rf"{_NAME}(?:,[ ]{_NAME}){{0,5}}(?:,?[ ](?:&|and)[ ]{_NAME})?(?:,?[ ]et[ ]al\.?)?"
 _CITED = rf"(?:{_AUTHORS},?[ ]\({_YEAR}\)|{_AUTHORS},?[ ]{_YEAR})"
+_PART = r"(?:,?[ ](?:Exp\.|Expt\.|Experiment|Study)[ ]?[0-9]{1,2}[a-z]?)?"
 _OPENING_CITATION = re.compile(
-    rf"{_NO_NAME}({_CITED})(?:[ \t]*[,;:|)-]?[ \t]*\Z"
+    rf"{_NO_NAME}({_CITED}{_PART})(?:[ \t]*[,;:|)-]?[ \t]*\Z"
     r"|,?[ ](?:found|reported|report|showed|observed|obtained|replicated)\b)"
 )
 _BRACKETED = rf"\(({_AUTHORS},?[ ]{_YEAR})\)"
@@ -52,6 +53,10 @@ def label_before(lead: str) -> tuple[int, int] | None:
     end = colon.start()
     while end > start and lead[end - 1] in " \t":
         end -= 1
+    if lead.count("(", start, end) > lead.count(")", start, end):
+        start = lead.rindex("(", start, end) + 1  # "(t test: t(38) = 2.31)"
+    elif lead[start:end].startswith("(") and lead[start:end].endswith(")"):
+        start, end = start + 1, end - 1
     return (start, end) if start < end <= start + _LONGEST else None
 
 

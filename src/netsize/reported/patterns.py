@@ -73,10 +73,10 @@ _SYMBOLS = (
     (
         "ci",
         "0123456789",
-        r"[0-9]{2}(?:\.[0-9]{1,2})?[ ]?%[ ]?"
-        r"(?:CIs?\b|C\.I\.|[Cc]onfidence[ -][Ii]nterval)",
+        r"[0-9]{2}(?:\.[0-9]{1,2})?[ ]?%[ -]?"
+        r"(?:CIs?\b|KI\b|IC\b|C\.I\.|[Cc]onfidence[ -][Ii]nterval(?:[ ][\[(]CI[\])])?)",
     ),
-    ("ci", "C", r"(?:CI|C\.I\.)(?:[ _-]?[0-9]{2}%?)?(?![A-Za-z])"),
+    ("ci", "CKI", r"(?:CI|KI|IC|C\.I\.)(?:[ _-]?[0-9]{2}%?)?(?![A-Za-z])"),
     ("table", "2", r"2[ ]?x[ ]?2"),
     (
         "dfafter",
@@ -222,8 +222,9 @@ RELATION = re.compile(
 )
 # HR 0.68 (95% CI, 0.51-0.91), OR, 1.85 [1.10-3.10]: as medical journals print estimates
 ESTIMATE_THEN_INTERVAL = re.compile(
-    rf"[,:]?[ ]{{0,2}}(?={NUMBER}[ ]?[,;]?[ ]?[(\[]?[ ]?"
-    r"[0-9]{2}(?:\.[0-9]{1,2})?[ ]?%[ ]?(?:CI|C\.I|[Cc]onf))"
+    r"(?:[ ](?:for|of|in)[ ][A-Za-z -]{1,40}?)?(?:[,:]|[ ](?:was|of|is)(?=[ ]))?[ ]{0,2}"
+    rf"(?={NUMBER}[ ]?[,;]?[ ]?(?:[(\[]?[ ]?(?:[0-9]{{2}}(?:\.[0-9]{{1,2}})?[ ]?%[ -]?"
+    rf"(?:CI|KI|IC|C\.I|[Cc]onf)|CI)|[(\[]{NUMBER}[ ]?(?:,|;|to|-)[ ]?{NUMBER}[)\]]))"
 )
 # (38) = 2.31 and (1, 56) < 5.12: a value with a decimal point, closed by something that cannot go
 # on with it. Nearly every statistic is of this form and needs none of the patterns below.
@@ -270,7 +271,7 @@ BARE_INTERVAL = re.compile(
 # n = 20; n = 20 and 22; n = 20/22; ns = 20, 22; n = 20 per group
 SIZES = re.compile(
     r"[ ]?[=:][ ]?([0-9]{1,3}(?:,[0-9]{3}){1,2}(?![0-9])|[0-9]{1,25}(?:[.,][0-9]{1,25})?)"
-    r"(?:(?:[ ]?(?:/|\+|&|and|vs\.?|versus)[ ]?|,[ ]?)"
+    r"(?:(?:[ ]?(?:/|\+|&|and|und|vs\.?|versus)[ ]?|,[ ]?)"
     r"(?=[0-9]{1,7}[ ]?(?:$|[\n;,)\[]))([0-9]{1,7}))?"
     r"(?!\.?[0-9]|[ ]?%)"
 )
@@ -338,7 +339,8 @@ ASSUMPTION_BEFORE = re.compile(
 STRAY_COMMA = re.compile(r",[ ]?=?(?=[ ]?-?[0-9]{0,4}\.[0-9]{1,6}(?:[,;)\n]|\Z))")
 PLANNED_BEFORE = re.compile(
     r"(?:[Pp]ower[ ]analys[ie]s|%[ ]power|statistical[ ]power|"
-    r"power(?:ed)?[ ](?:of|to|for)\b|to[ ]detect|[Dd]etectable|[Ss]mallest[ ]effect|[Ss]ensitivity[ ]analysis|a[ ]priori)"
+    r"power(?:ed)?[ ](?:of|to|for)\b|"
+    r"to[ ]detect|[Dd]etectable|[Ss]mallest[ ]effect|[Ss]ensitivity[ ]analysis|a[ ]priori)"
     r"[^.;\n]{0,60}\Z"
 )
 # "one-tailed t(40)": the words belong to what follows

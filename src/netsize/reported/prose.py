@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections import Counter
 from typing import Any
 
@@ -48,8 +49,11 @@ def read_prose(source: Source) -> tuple[list[ReportedResult], list[Unread]]:
                     against_words=bool(against),
                 )
             except Fault as fault:
+                # "5.2 ± 1.1 (n = 20)" beside a test only describes
+                described = group.first("plusminus") and any(g.primary for g in groups)
+                harmless = fault.harmless or bool(described and group.primary is None)
                 place = marked_place(group, fault)
-                lost.append(source.places.unread(*place, fault.reason, harmless=fault.harmless))
+                lost.append(source.places.unread(*place, fault.reason, harmless=harmless))
                 continue
             if fields is not None:
                 built.append((group, fields))
@@ -123,7 +127,8 @@ def _labels(groups: list[Group], line: Line, source: Source) -> list[str | None]
 def _words(found: tuple[int, int] | None, offset: int, source: Source) -> str | None:
     if found is None:
         return None
-    return source.words(offset + found[0], offset + found[1]) or None
+    words = source.words(offset + found[0], offset + found[1])
+    return re.sub(r" ?\[[^\]]*\]", "", words) or words or None
 
 
 def _first_statistic(group: Group) -> int:

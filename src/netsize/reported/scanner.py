@@ -22,6 +22,7 @@ __all__ = ["scan"]
 
 # how many degrees of freedom a plain value may have: none is right for every kind
 _PLAIN_COUNT = {"t": (0, 1), "F": (0, 2), "r": (0, 1), "chi": (0, 1), "wald": (0, 1)}
+LEVEL_TAKEN = "the interval's level is not printed: 95% taken"
 _TAKES_ARGUMENTS = frozenset(("t", "F", "r", "z", "chi", "wald", "p", "rank", "slope"))
 
 
@@ -97,11 +98,13 @@ def _statistic(kind: str, match: re.Match[str], text: str) -> Item | None:
             flags.add("bare")
             at = bare.end()
     relation = patterns.RELATION.match(text, at)
-    if kind in ("odds", "ratio", "smd") and (relation is None or relation[1] == ":"):
+    if kind in ("odds", "ratio", "smd") and (relation is None or relation[1] in (":", None)):
         before = patterns.ESTIMATE_THEN_INTERVAL.match(text, at)
         if before:
             number, end = printed_number(text, before.end(), "=", kind, start)
-            return Item(kind, match[0], start, end, number)
+            interval, end = bare_interval(kind, text, end)
+            told = () if interval is None else (LEVEL_TAKEN,)
+            return Item(kind, match[0], start, end, number, interval=interval, notes=told)
     spoken = bracketed or worded or kind in ("smd", "odds", "ratio") or match[0][1:]
     if relation is None or (relation[2] and not spoken):
         if not bracketed or kind == "p":
@@ -117,7 +120,7 @@ def _statistic(kind: str, match: re.Match[str], text: str) -> Item | None:
         return None
     interval, end = bare_interval(kind, text, end)
     if interval is not None:
-        notes.append("the interval's level is not printed: 95% taken")
+        notes.append(LEVEL_TAKEN)
     return Item(
         kind, match[0], start, end, number, arguments, sizes, frozenset(flags), interval,
         notes=tuple(notes),

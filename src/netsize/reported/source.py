@@ -16,7 +16,10 @@ __all__ = ["Source"]
 
 @dataclass(frozen=True, slots=True)
 class Source:
-    """`text` is normalised, with comments and soft line breaks blanked; places are unchanged."""
+    """`text` is normalised, with comments and soft line breaks blanked; places are unchanged.
+
+    `printed` holds the label under which the numbers of a test were met first.
+    """
 
     original: str
     text: str
@@ -25,6 +28,7 @@ class Source:
     defaults: dict[str, Any]
     against_words: bool
     labels: Labels = field(default_factory=Labels)
+    printed: dict[tuple[Any, ...], str] = field(default_factory=dict)
 
     def words(self, start: int, end: int) -> str:
         """The original characters of normalised [start, end), blanks joined."""
@@ -43,6 +47,12 @@ class Source:
         """The finished record: `label` made unique; the sample is the label unless named."""
         span = self.places.span(group.start, group.end)
         unique = self.labels.unique(label)
+        if fields.get("decimals") and fields["decimals"] > 1 and fields.get("df"):
+            key = (fields["family"], fields["value"], fields["df"], fields["p"], fields["n"])
+            first = self.printed.setdefault(key, unique)
+            if first is not unique:
+                note = f"the same numbers as {first}; if one test is printed twice, leave one out"
+                fields["notes"] = (*fields.get("notes", ()), note)
         return ReportedResult(
             label=unique,
             sample=sample or label or unique,
