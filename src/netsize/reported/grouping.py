@@ -104,8 +104,9 @@ def _place(item: Item, line: Line, text: str) -> None:
     if item.kind == "tag":
         _place_tag(item, line, group, text)
         return
-    if item.kind == "plural" and group is not None and group.primary is not None:
-        return  # "ps < .05" beside the tests that it sums up
+    beside = group is not None and (group.primary or group.first("plural"))
+    if item.kind == "plural" and item.name[0] == "p" and beside:
+        return  # "ps < .05" beside the tests that it sums up; "Fs < 1" are tests of their own
     if group is None or not _joins(group, item, text):
         group = Group(item.start, item.end)
         line.groups.append(group)
@@ -135,7 +136,7 @@ def _joins(group: Group, item: Item, text: str) -> bool:
     if item.start - group.end > _LONGEST_GAP:
         return False
     gap = text[group.end : item.start]
-    if item.kind == "other" or len(group.items) >= _MOST_ITEMS:
+    if item.kind in ("other", "plural") or len(group.items) >= _MOST_ITEMS:
         return False
     if gap not in _PLAIN_GAPS and _ends_sentence(gap):
         return False
@@ -173,7 +174,7 @@ def _ends_sentence(gap: str) -> bool:
 def _same_test(before: Item, item: Item, gap: str) -> bool:
     """Whether a second test symbol describes the test that the first one opened."""
     if before.kind == "rank" or _rank_sum(before):
-        return item.kind == "z"
+        return item.kind == "z" and _only_connectors(gap, patterns.SAMPLE_WORDS)
     if before.kind == "slope":
         beta = item.kind == "slope" and item.name[0] == "β" != before.name[0]
         return beta or item.kind in ("t", "z", "wald", "odds")

@@ -57,6 +57,8 @@ def label_before(lead: str) -> tuple[int, int] | None:
         start = lead.rindex("(", start, end) + 1  # "(t test: t(38) = 2.31)"
     elif lead[start:end].startswith("(") and lead[start:end].endswith(")"):
         start, end = start + 1, end - 1
+    if _EQUATION.match(lead, start):
+        return None
     return (start, end) if start < end <= start + _LONGEST else None
 
 
@@ -65,6 +67,9 @@ def citation_beside(text: str, floor: int, start: int, end: int) -> tuple[int, i
     found = _BRACKETED_BEFORE.search(text, max(floor, start - _LONGEST), start)
     found = found or _BRACKETED_AFTER.match(text, end, end + _LONGEST)
     return found.span(1) if found else None
+
+
+_EQUATION = re.compile(r"(?:Eqs?\.|Equations?|Figs?\.|Figures?)[ ]?[0-9(]")
 
 
 class Labels:

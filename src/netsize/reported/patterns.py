@@ -41,6 +41,7 @@ __all__ = [
     "PERCENT_PAIR",
     "PLAIN_VALUE",
     "PLANNED_BEFORE",
+    "POWER",
     "RELATION",
     "SAMPLE_WORDS",
     "SENTENCE_END",
@@ -329,11 +330,12 @@ LEVEL_AFTER = re.compile(
 )
 CRITICAL_VALUE = re.compile(r"\bcritical[ ](?:values?|[tFrz]\b|χ)")
 # z as the third of x, y, z: a place in the brain or in a room
+POWER = re.compile(r"1[ ]?-[ ]?\Z")  # 1 - β is power, no coefficient
 COORDINATE = re.compile(r"\b[yY][ ]?(?:=[ ]?-?[0-9.]{1,6}[ ]?)?(?:mm)?[,;][ ]?(?:and[ ])?\Z")
 # tests of what a test presupposes, or of the fit of a model, are no results of a study
 ASSUMPTION_BEFORE = re.compile(
     r"\b(?:Levene|Mauchly|Shapiro|Kolmogorov|Bartlett|Brown-Forsythe|Box's[ ]M|Hosmer)"
-    r"[^.;\n]{0,90}\Z"
+    r"(?:(?![.!?][ \n]{1,3}[A-Z]|;)[\s\S]){0,90}\Z"
 )
 # t(38), = 2.31
 STRAY_COMMA = re.compile(r",[ ]?=?(?=[ ]?-?[0-9]{0,4}\.[0-9]{1,6}(?:[,;)\n]|\Z))")
@@ -341,7 +343,7 @@ PLANNED_BEFORE = re.compile(
     r"(?:[Pp]ower[ ]analys[ie]s|%[ ]power|statistical[ ]power|"
     r"power(?:ed)?[ ](?:of|to|for)\b|"
     r"to[ ]detect|[Dd]etectable|[Ss]mallest[ ]effect|[Ss]ensitivity[ ]analysis|a[ ]priori)"
-    r"[^.;\n]{0,60}\Z"
+    r"(?:(?![.!?][ \n]{1,3}[A-Z])[\s\S]){0,100}\Z"
 )
 # "one-tailed t(40)": the words belong to what follows
 TEST_FOLLOWS = re.compile(r"[ ]?(?:[a-z-]{1,14}[ ]){0,2}[tFrzpP][ ]?[(=<>0-9]")
@@ -433,6 +435,6 @@ SOFT_BREAK = re.compile(
     r"|(?<=\b[tTFrzZpPdgN]\n)(?=[ \t]{0,20}[(\[=<0-9])"
     r"|(?<=[0-9)*]\n)(?=(?:[pP]|d|g|Cohen's[ ]d)[ ]?[=<>][ ]?[<]?[ ]?-?[0-9.,]{1,8}"
     r"[ \t]{0,9}(?:\n|\Z))"
-    rf"|(?<=[a-z]{{3}}\n)(?=[ \t]{{0,20}}(?!{_STARTS_OWN})[a-z]{{2,20}}[, ])"
+    rf"|(?<=[a-z']{{3}}\n)(?=[ \t]{{0,20}}(?!{_STARTS_OWN})[a-z]{{2,20}}[, ])"
     r"|(?<=[ \n](?:and|was|for)\n)(?=[ \t]{0,20}[a-zA-Z0-9]))"
 )

@@ -20,6 +20,7 @@ from netsize.reported.tags import merged
 
 __all__ = ["APART", "SHARED", "marked_place", "read_prose"]
 
+_WRAPPED = 60  # a line of this length goes on in the next one
 SHARED = "shares a sample with the other results of its label; [sample NAME] parts them"
 APART = "taken as a sample of its own beside others in the text; [sample NAME] joins them"
 
@@ -28,13 +29,14 @@ def read_prose(source: Source) -> tuple[list[ReportedResult], list[Unread]]:
     """Results and unread places of everything outside tables."""
     results: list[ReportedResult] = []
     unread: list[Unread] = []
+    floor = 0
     for line in group_items(scan(source.text), source.text):
         built: list[tuple[Group, dict[str, Any]]] = []
         lost: list[Unread] = []
         against = source.against_words and patterns.AGAINST_WORDS.search(
             source.text, line.start, line.end
         )
-        floor = line.start
+        floor = _sentence_floor(source.text, line.start, floor)
         groups = joined(line.groups, source.text)
         for group in groups:
             group.faults[:0] = line.faults
@@ -62,6 +64,15 @@ def read_prose(source: Source) -> tuple[list[ReportedResult], list[Unread]]:
         results += _named(built, line, source)
         unread += lost
     return results, unread
+
+
+def _sentence_floor(text: str, start: int, floor: int) -> int:
+    """How far back the words before a line's first statistic reach: over the break of wrapped text,
+    never over the statistic before it.
+    """
+    before = text.rfind("\n", max(start - 400, 0), max(start - 1, 0)) + 1
+    wrapped = start - 1 - before >= _WRAPPED and text[start - 2] not in ".:;!?"
+    return max(before, min(floor, start)) if wrapped else start
 
 
 def marked_place(group: Group, fault: Fault) -> tuple[int, int]:

@@ -64,6 +64,8 @@ def _statistic(kind: str, match: re.Match[str], text: str) -> Item | None:
     start, at = match.span()
     if kind == "p" and _is_level(text, match):
         return None
+    if match[0] == "β" and patterns.POWER.search(text, max(start - 4, 0), start):
+        return None
     if kind == "z" and patterns.COORDINATE.search(text, max(start - 16, 0), start):
         return None
     plain = patterns.PLAIN_VALUE.match(text, at)
