@@ -96,7 +96,7 @@ def _preceding_design(group: Group, text: str, begin: int) -> str | None:
     item = group.primary
     if item is None or item.kind not in ("t", "F") or item.start - begin < 3:
         return None
-    before = text[max(begin, item.start - 100) : item.start]
+    before = text[max(begin, item.start - 100) : item.start].replace("\n", " ")
     words = nearer = patterns.DESIGN_WORDS.search(before)
     while nearer:
         words = nearer
