@@ -103,7 +103,7 @@ def test_factorial(points: dict[str, np.ndarray], df1: int, cells: int) -> None:
     np.testing.assert_allclose(ours, theirs, atol=1e-6)
 
 
-@pytest.mark.parametrize(("tested", "all_terms"), [(1, 1), (3, 3), (2, 9)])
+@pytest.mark.parametrize(("tested", "predictors"), [(1, 1), (3, 3), (2, 9)])
 def test_regression(points: dict[str, np.ndarray], tested: int, predictors: int) -> None:
     n = points["n"] + predictors
     f2 = points["strength"] ** 2 / n
