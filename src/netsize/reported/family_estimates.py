@@ -67,7 +67,8 @@ def from_ratio(context: Context) -> Fields:
     item = context.primary
     if item.number is None or item.number.value <= 0:
         raise Fault("a ratio is above 0")
-    if item.name in ("HR", "RR") and item.number.value >= _LARGEST_RATIO:
+    rate = not item.number.decimals and item.number.value > 1  # hardly a rounded ratio
+    if item.name in ("HR", "RR") and (rate or item.number.value >= _LARGEST_RATIO):
         raise Fault(f"{item.name} may be a rate, such as a heart rate; write hazard or risk ratio")
     if item.interval is None:
         raise Fault(f"{item.name} needs its interval: {item.name} = 1.85, 95% CI [1.10, 3.10]")

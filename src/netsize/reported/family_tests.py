@@ -24,6 +24,9 @@ __all__ = ["from_chi", "from_f", "from_p", "from_r", "from_rank", "from_t", "fro
 def from_t(context: Context) -> Fields:
     item = context.primary
     bare = not item.arguments and not context.group.first("df")
+    year = item.arguments and 1800 <= item.arguments[0] < 2100
+    if year and item.number and not item.number.decimals and context.group.p() is None:
+        raise Fault("a year may stand in these brackets; print the value with its decimals")
     if item.name == "T" and bare:
         raise Fault("the rank statistic T is converted through its z; print z with n")
     decimals = item.number.decimals if item.number else None

@@ -108,6 +108,8 @@ def _place(item: Item, line: Line, text: str) -> None:
     if item.kind == "plural" and item.name[0] == "p" and beside:
         return  # "ps < .05" beside the tests that it sums up; "Fs < 1" are tests of their own
     if group is None or not _joins(group, item, text):
+        if "words" in item.flags:
+            return  # "was not significant" away from a statistic says nothing that can be used
         group = Group(item.start, item.end)
         line.groups.append(group)
     group.add(item)
@@ -141,6 +143,8 @@ def _joins(group: Group, item: Item, text: str) -> bool:
     if gap not in _PLAIN_GAPS and _ends_sentence(gap):
         return False
     if item.kind in PRIMARY:
+        if ":" in gap and patterns.LABEL_WITHIN_LINE.search(gap):
+            return False
         if group.primary is None:
             return not _STOP_BEFORE.search(gap) or all(i.kind == "size" for i in group.items)
         return _same_test(group.primary, item, gap)
@@ -150,6 +154,8 @@ def _joins(group: Group, item: Item, text: str) -> bool:
         return False
     if item.kind in _MANY:
         return True
+    if item.name == NOT_SIGNIFICANT and not _only_connectors(gap):
+        return False
     if group.primary is None and all(i.kind == "size" for i in group.items):
         return _only_connectors(gap, patterns.SAMPLE_WORDS)  # "n = 40, p = .03", not "N = 80 ..."
     same = [i for i in group.items if i.kind == item.kind and i.name != NOT_SIGNIFICANT]

@@ -12,6 +12,7 @@ import math
 import re
 from itertools import zip_longest
 
+from netsize.reported import patterns
 from netsize.reported.effect_names import effect_name
 from netsize.reported.faults import Fault
 from netsize.reported.grouping import Group
@@ -51,8 +52,10 @@ def _leading(group: Group) -> Item | None:
 
 
 def _one_test(a: Group, b: Group, text: str) -> bool:
-    if a.faults or b.faults or a.settings.keys() & {"sample", "left_out"}:
+    if a.faults or b.faults or (a.settings.keys() | b.settings.keys()) & {"sample", "left_out"}:
         return False
+    if patterns.LABEL_WITHIN_LINE.search(text, a.end, b.start):
+        return _means_and_test(a, b, agreeing=True)
     if _counts_with_ratio(a, b) and not _PARTS.search(text, a.end, min(b.start, a.end + 60)):
         return b.start - a.end < 60
     return (
@@ -81,8 +84,10 @@ def _take_in(group: Group, other: Group) -> None:
         group.primary.notes = (*group.primary.notes, NOTE)
 
 
-def _means_and_test(a: Group, b: Group) -> bool:
-    """Means of two groups without a test, and a t or F(1, ·) with the df that their sizes give."""
+def _means_and_test(a: Group, b: Group, *, agreeing: bool = False) -> bool:
+    """Means of two groups without a test, and a t or F(1, ·) with the df that their sizes give;
+    with `agreeing` or a fractional df, also with the value that they give.
+    """
     test = b.primary
     if a.primary is not None or test is None or test.kind not in ("t", "F") or test.number is None:
         return False
@@ -96,7 +101,7 @@ def _means_and_test(a: Group, b: Group) -> bool:
         return False
     df = test.arguments[-1]
     first, second = means
-    if df == int(df):
+    if df == int(df) and not agreeing:
         return df == first.n + second.n - 2 or (first.n == second.n and df == first.n - 1)
     value = abs(test.number.value) if test.kind == "t" else math.sqrt(max(test.number.value, 0.0))
     return min(abs(value - t) for t in means_t(first, second)) < 0.1 + 0.1 * value

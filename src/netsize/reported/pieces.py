@@ -106,7 +106,9 @@ def _size(match: re.Match[str], text: str) -> Item | None:
 
 
 def _ns(match: re.Match[str], text: str) -> Item | None:
-    return Item("p", NOT_SIGNIFICANT, match.start(), match.end(), Printed(0.05, ">", 2))
+    words = frozenset(("words",)) if match[0][-1] == "t" else frozenset()
+    number = Printed(0.05, ">", 2)
+    return Item("p", NOT_SIGNIFICANT, match.start(), match.end(), number, flags=words)
 
 
 def _pair(match: re.Match[str], text: str) -> Item | None:
