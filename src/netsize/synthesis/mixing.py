@@ -30,12 +30,15 @@ _NODES, _WEIGHTS = leggauss(20)
 _NARROW_LINE, _NARROW_HALF_LINE = 1.5, 3.0
 
 
-def mix(curves: PPoly, theta: Array, mu: Array, tau: Array, *, half_line: bool) -> Array:
+def mix(
+    curves: PPoly, values: Array, theta: Array, mu: Array, tau: Array, *, half_line: bool
+) -> Array:
     """log ∫ e^{c(θ)} N(θ; μ, τ²) dθ for every curve c, every τ and μ.
 
     Parameters
     ----------
     curves : m logarithms of curves as one spline, curves(θ) of shape (*θ.shape, m).
+    values : curves(theta), (G, m).
     theta : (G,) uniform grid fine enough for the curves; starts at 0 when `half_line`.
     mu : (M,), inside the grid. tau : (T,), at least 0.
 
@@ -45,7 +48,6 @@ def mix(curves: PPoly, theta: Array, mu: Array, tau: Array, *, half_line: bool) 
     """
     step = theta[1] - theta[0]
     narrow = tau < step * (_NARROW_HALF_LINE if half_line else _NARROW_LINE)
-    values = curves(theta)  # (G, m)
     top = values.max(axis=0)
     values = np.exp(np.maximum(values - top, LOG_FLOOR))
     averaged = np.empty((tau.size, mu.size, top.size))
@@ -60,8 +62,9 @@ def mix(curves: PPoly, theta: Array, mu: Array, tau: Array, *, half_line: bool) 
             inside = np.exp(np.maximum(curves(points) - top, LOG_FLOOR))  # (M, nodes, m)
             averaged[j] = (weights[:, None, :] @ inside)[:, 0]
         else:
-            offset = (theta - mu[:, None]) / width
-            weights = np.exp(np.maximum(-0.5 * offset**2, LOG_FLOOR))
+            weights = (theta - mu[:, None]) * (np.sqrt(0.5) / width)
+            weights *= -weights
+            np.exp(np.maximum(weights, LOG_FLOOR, out=weights), out=weights)
             if half_line:
                 # Euler–Maclaurin at 0, where the curves are flat: ½ of the end point, then
                 # + h²/12 of the slope of the normal

@@ -8,6 +8,7 @@ order 1/df), so its average over N(θ; μ, τ²) is known in closed form. A z st
 from __future__ import annotations
 
 from collections.abc import Sequence
+from math import atanh, isfinite, sqrt
 
 import numpy as np
 from scipy.special import ndtr
@@ -39,24 +40,24 @@ def is_precise(e: Evidence) -> bool:
 
 def centre(e: Evidence) -> float:
     """Rough location of one result's likelihood on the metric."""
-    ends = [x for x in (e.low, e.high) if np.isfinite(x)]
-    x = 0.0 if e.two_sided or not ends else float(np.mean(ends))
+    ends = [x for x in (e.low, e.high) if isfinite(x)]
+    x = 0.0 if e.two_sided or not ends else sum(ends) / len(ends)
     if e.kernel == "r":
-        return float(np.arctanh(np.clip(x, -0.999999, 0.999999)))
+        return atanh(min(max(x, -0.999999), 0.999999))
     if e.kernel in ("f", "chi2"):
-        return float(np.sqrt(max(x * (e.df[0] if e.kernel == "f" else 1.0), 0.0))) / e.scale
+        return sqrt(max(x * (e.df[0] if e.kernel == "f" else 1.0), 0.0)) / e.scale
     return x / e.scale
 
 
 def standard_error(e: Evidence) -> float:
     """Standard error of one result near no effect, on the metric."""
-    return float(1 / np.sqrt(e.df[0])) if e.kernel == "r" else 1.0 / e.scale
+    return 1 / sqrt(e.df[0]) if e.kernel == "r" else 1.0 / e.scale
 
 
 def spread(e: Evidence) -> float:
     """About the standard error at the result's own effect, larger where that effect is."""
     if e.kernel in ("t", "f"):
-        return standard_error(e) * float(np.sqrt(1 + (centre(e) * e.scale) ** 2 / (2 * e.df[-1])))
+        return standard_error(e) * sqrt(1 + (centre(e) * e.scale) ** 2 / (2 * e.df[-1]))
     return standard_error(e)
 
 

@@ -93,7 +93,7 @@ class Literature:
     mu_range : between which values μ is sought.
     curves : one spline of logarithms over θ: the likelihoods of the ordinary pieces, then log P_ij
         of all bands but the last, design by design, for the ordinary designs. A result is one
-        piece, or several where an inequality straddles p-bands.
+        piece, or several where an inequality straddles p-bands. values : the same on `theta`.
     bumps : (3, q) centre, width and log area of the precise pieces, whose likelihood is a normal
         curve. tails : (2, J-1, v) edges and widths of the precise designs, for which
         P(X > cut_j) = Φ((θ - edge)/width).
@@ -108,6 +108,7 @@ class Literature:
     half_line: bool
     mu_range: tuple[float, float]
     curves: PPoly
+    values: Array
     bumps: Array
     tails: Array
     precise: BoolArray
@@ -174,6 +175,7 @@ def literatures(
         support,
         half_line=half_line,
     )
+    values = spline(theta)
     bumps = bump([e for e, p in zip(flat, precise, strict=True) if p])
     tails = tail([e for e, p in zip(designs, precise_design, strict=True) if p])
     index = {design: u for u, design in enumerate(designs)}
@@ -196,6 +198,7 @@ def literatures(
                 half_line=half_line,
                 mu_range=mu_range,
                 curves=PPoly.construct_fast(spline.c[:, :, rows], spline.x),
+                values=values[:, rows],
                 bumps=bumps[:, column[mine][precise[mine]]],
                 tails=tails[:, :, row[used[precise_design[used]]]],
                 precise=precise[mine],
@@ -260,7 +263,8 @@ def surface(literature: Literature, *, mu: Array, tau: Array, log_weights: Array
 
 def mixed(literature: Literature, *, mu: Array, tau: Array) -> tuple[Array, Array]:
     """log M of the m pieces, (m, T, M), and A_j of the U designs, (U, J, T, M), summing to 1."""
-    logs = mix(literature.curves, literature.theta, mu, tau, half_line=literature.half_line)
+    half_line = literature.half_line
+    logs = mix(literature.curves, literature.values, literature.theta, mu, tau, half_line=half_line)
     plain, plain_design = ~literature.precise, ~literature.precise_design
     size, open_bands = int(plain.sum()), literature.bands - 1
     pieces = np.empty((plain.size, tau.size, mu.size))

@@ -16,7 +16,6 @@ from typing import TypeAlias
 
 import numpy as np
 from numpy.polynomial.legendre import leggauss
-from scipy.special import logsumexp
 
 from netsize.numerics.arrays import Array
 from netsize.synthesis.precise import nodes_around
@@ -85,7 +84,7 @@ def integrate(
             break
     sizes = tuple(int(np.ceil(n * level)) for n in (*_FINE, _OMEGA[axes][1]))
     lattice, log_joint = _evaluate(literature, priors, windows, sizes)
-    total = float(logsumexp(log_joint))
+    total = _log_sum(log_joint)
     null_axes = [_legendre((floor, 0.0), _NULL_NODES if axes == 1 else 12)] * axes
     log_null = surface(
         literature,
@@ -98,7 +97,7 @@ def integrate(
         lattice=lattice,
         joint=np.exp(log_joint - total),
         log_evidence=total,
-        log_null=float(logsumexp(log_null[0, 0] + null_weights)),
+        log_null=_log_sum(log_null[0, 0] + null_weights),
     )
 
 
@@ -106,13 +105,18 @@ def total_evidence(posterior: Posterior, priors: Priors) -> float:
     """log of the prior-averaged likelihood, both components."""
     with np.errstate(divide="ignore"):
         shares = np.log([1 - priors.negligible, priors.negligible])
-    return float(logsumexp(np.add(shares, [posterior.log_evidence, posterior.log_null])))
+    return _log_sum(np.add(shares, [posterior.log_evidence, posterior.log_null]))
 
 
 def negligible(posterior: Posterior, priors: Priors) -> float:
     """Posterior probability of the negligible component."""
     odds = np.exp(np.clip(posterior.log_evidence - posterior.log_null, -700, 700))
     return float(priors.negligible / (priors.negligible + (1 - priors.negligible) * odds))
+
+
+def _log_sum(values: Array) -> float:
+    top = float(values.max())
+    return top + float(np.log(np.exp(values - top).sum()))
 
 
 def _evaluate(
