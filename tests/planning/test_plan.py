@@ -340,3 +340,27 @@ def test_an_effect_beyond_its_scale_is_refused():
 def test_the_rule_single_study_needs_a_significant_result():
     with pytest.raises(EvidenceError, match="significant"):
         netsize.plan("t(38) = 1.1", rule="single-study")
+
+
+def test_an_absurd_entry_is_refused_by_name():
+    with pytest.raises(EvidenceError, match="check the entry"):
+        netsize.plan("Lab A: t(38) = 99999, p < .001")
+
+
+@pytest.mark.parametrize(
+    ("text", "design", "expected"),
+    [
+        ("χ2(2, N = 80) = 8.5\nχ2(2, N = 100) = 9.1", "contingency", {"df1": 2}),
+        ("F(3, 60) = 4.0\nF(3, 80) = 3.9", "anova", {"groups": 4}),
+    ],
+)
+def test_a_design_asked_for_takes_its_shape_from_the_evidence(text, design, expected):
+    study = netsize.plan(text, design=design).study
+    assert {name: getattr(study.design, name) for name in expected} == expected
+
+
+@pytest.mark.parametrize("design", ["factorial", "contingency"])
+def test_a_shape_that_the_evidence_does_not_settle_is_asked_for(design):
+    with pytest.raises(SettingError) as caught:
+        netsize.plan("F(2, 57) = 5.0\nF(2, 87) = 4.1", design=design)
+    assert caught.value.setting == "--design"

@@ -341,3 +341,17 @@ def test_cites_what_enters(documents):
     assert "Olkin, I., & Pratt" not in cited("finite")
     assert "Composites of several results" in cited("finite")
     assert "Composites of several results" not in cited("f-tests")
+
+
+@pytest.mark.parametrize(
+    ("text", "choices"),
+    [
+        ("χ2(2, N = 120) = 7.3\nχ2(2, N = 200) = 9.1", {}),
+        ("F(2, 57) = 5.0\nF(2, 87) = 4.1", {"design": "factorial", "df1": 2, "cells": 6}),
+        ("F(2, 57) = 5.0\nF(2, 87) = 4.1", {"design": "regression", "added_terms": 2}),
+        ("F(2, 57) = 5.0\nF(2, 87) = 4.1", {"design": "repeated", "occasions": 3}),
+        ("t(20) = 2.9 [one-sample]\nt(30) = 3.3 [one-sample]", {}),
+    ],
+)
+def test_every_design_that_can_be_planned_can_be_reported(text, choices):
+    assert netsize.report(text, **choices).sections

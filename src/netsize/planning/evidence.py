@@ -21,6 +21,8 @@ from netsize.synthesis.selection import dependence_weights
 from netsize.synthesis.selection_averaged import AveragedFit, fit_averaged, log_evidence
 from netsize.synthesis.selection_profile import ProfileFit, fit_profile
 
+_ABSURD = 20.0  # effects beyond this are slips of the pen
+
 __all__ = ["Literature", "gather", "table_of"]
 
 
@@ -85,6 +87,13 @@ def table_of(
         correlation=settings.correlation,
         cut_points=settings.cut_points,
     )
+    for row in table.rows:
+        if row.printed is not None and abs(row.printed) > _ABSURD:
+            raise EvidenceError(
+                f"{row.label}: {row.result.text or 'the result'} means an effect of "
+                f"{row.metric.symbol} = {row.printed:,.1f}, which no study finds; check the entry, "
+                "or mark the line [leave out: REASON]"
+            )
     if not table.rows:
         raise EvidenceError("no usable result is left; nothing can be planned from that")
     return table, (*table.left_out, *left_out)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections import Counter
+from typing import Any
 
 import numpy as np
 
@@ -41,8 +42,28 @@ def study_for(table: EffectTable, settings: PlanSettings) -> tuple[Study, tuple[
     if name is None:
         name, notes, found = _matching(table)
         options = found | options
+    else:
+        options = _shape_of(name, table, options)
     study = make_study(name, alpha=settings.alpha, sides=settings.sides, **options)
     return study, notes
+
+
+def _shape_of(name: str, table: EffectTable, options: dict[str, Any]) -> dict[str, Any]:
+    """The options that give an F or chi-square test its degrees of freedom, never by default.
+
+    Taken from the evidence where that all has one shape; otherwise the user is asked.
+    """
+    needed = {"anova": ("groups",), "factorial": ("df1", "cells"), "contingency": ("df1", "rows")}
+    wanted = needed.get(name, ())
+    if not wanted or any(option in options for option in wanted):
+        return options
+    kernel = "chi2" if name == "contingency" else "f"
+    first = {row.evidence.df[0] for row in table.rows if row.evidence.kernel == kernel}
+    if name == "factorial" or len(first) != 1 or not next(iter(first)).is_integer():
+        named = " and ".join(f"--{option}" for option in wanted[: 2 if name == "factorial" else 1])
+        raise SettingError("--design", f"{name} needs {named}: the evidence does not settle it")
+    df1 = int(first.pop())
+    return options | ({"df1": df1} if name == "contingency" else {"groups": df1 + 1})
 
 
 def effect_on(study: Study, metric: Metric, value: Array) -> Array:

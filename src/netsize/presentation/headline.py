@@ -7,6 +7,8 @@ import math
 from netsize.planning.plan import Plan
 from netsize.presentation.format import count, counts, effect, ordinal, percent
 
+_IMPRACTICAL = 10_000  # participants
+
 __all__ = ["headline", "planned", "value_in_words"]
 
 
@@ -17,9 +19,14 @@ def headline(plan: Plan) -> str:
     elif plan.settings.goal == "budget":
         sentences = [_budget(plan)]
     elif plan.settings.goal == "precision":
-        sentences = [_precision(plan), _as_printed(plan)]
+        sentences = [_precision(plan), _as_printed_size(plan)]
     else:
         sentences = [_power(plan), _as_printed(plan)]
+    if (plan.answer.sized.n_total or 0) > _IMPRACTICAL:
+        sentences.append(
+            "A size like this says that the evidence does not fix one: name a smallest effect of "
+            "interest with --smallest-effect, or plan at a lower assurance."
+        )
     if plan.answer.probability_negligible > 0.5:
         sentences.append(
             "Caution: the evidence is better explained by no effect than by one "
@@ -63,6 +70,16 @@ def _budget(plan: Plan) -> str:
             f"{plan.metric.symbol} = {effect(plan.answer.detectable)}."
         )
     return text
+
+
+def _as_printed_size(plan: Plan) -> str:
+    naive = plan.row("as-printed")
+    if naive.sized.n_total is None:
+        return ""
+    return (
+        f"Taken as printed ({plan.metric.symbol} = {effect(naive.effect)}), the papers would "
+        f"suggest {count(naive.sized.n_total)}: precision depends little on the effect."
+    )
 
 
 def _as_printed(plan: Plan) -> str:

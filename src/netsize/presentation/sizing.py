@@ -47,7 +47,7 @@ def sizing_sentence(sizing: Sizing, found: Abilities | None = None) -> str:
     power, reached = float(sizing.power.flat[0]), float(sizing.reached.flat[0])
     kind = sizing.goal.kind
     if kind == "given" and found is not None:
-        text = f"With {people} the power to find {at} is {percent(power)}"
+        text = f"With {people} the power to {_aim(sizing)} {at} is {percent(power)}"
         least = float(found.detectable.flat[0])
         if np.isfinite(least):
             text += (
@@ -58,7 +58,7 @@ def sizing_sentence(sizing: Sizing, found: Abilities | None = None) -> str:
     if kind == "half-width":
         return f"Plan for {people}: {_goal(sizing)} at {at}; it comes to {effect(reached)}."
     if kind == "power":
-        return f"Plan for {people}: power {percent(power)} to find {at}."
+        return f"Plan for {people}: power {percent(power)} to {_aim(sizing)} {at}."
     if kind == "assurance":
         return (
             f"Plan for {people}: with probability {percent(reached)} the power is "
@@ -192,3 +192,13 @@ def _table(sizing: Sizing, found: Abilities | None) -> tuple[list[Column], list[
 
 def _at(values: Array, i: int) -> float:
     return float(values.flat[i])
+
+
+def _aim(sizing: Sizing) -> str:
+    """What the test is to show; the effect follows."""
+    margin = getattr(sizing.study.design, "margin", None)
+    if sizing.study.design.name == "equivalence":
+        return f"show a difference below {effect(margin)} either way if the true one is"
+    if sizing.study.design.name == "non-inferiority":
+        return f"show that the loss stays below {effect(margin)} if the true difference is"
+    return "find"

@@ -16,10 +16,14 @@ Column: TypeAlias = tuple[str, Literal["left", "right"]]
 
 _PIPE_WIDTH = 10_000
 _TEXT_WIDTH = 100
+_NAME_WIDTH = 24  # a text column narrower than this, or than its text, breaks names to bits
 
 
 def show_table(columns: Sequence[Column], rows: Sequence[Sequence[str]], title: str = "") -> None:
-    """Print a table: right-aligned columns never wrap, left-aligned ones may."""
+    """Print a table: right-aligned columns never wrap, left-aligned ones may.
+
+    On a terminal too narrow for it every row becomes a short list, so that no number is cut.
+    """
     from rich import box
     from rich.table import Table
     from rich.text import Text
@@ -31,7 +35,32 @@ def show_table(columns: Sequence[Column], rows: Sequence[Sequence[str]], title: 
         table.add_row(*(Text(_printable(cell)) for cell in row))
     if title:
         show_text(title)
-    _print(table)
+    if sys.stdout.isatty() and _needed(columns, rows) > _terminal_width():
+        _show_blocks(columns, rows)
+    else:
+        _print(table)
+
+
+def _needed(columns: Sequence[Column], rows: Sequence[Sequence[str]]) -> int:
+    """Width below which a column would be cut or a name broken to bits."""
+    widths = [
+        max(len(name), *(len(row[j]) for row in rows), 0) for j, (name, _) in enumerate(columns)
+    ]
+    kept = [w if columns[j][1] == "right" else min(w, _NAME_WIDTH) for j, w in enumerate(widths)]
+    return sum(kept) + 2 * (len(columns) - 1)
+
+
+def _show_blocks(columns: Sequence[Column], rows: Sequence[Sequence[str]]) -> None:
+    for row in rows:
+        show_text(row[0] if columns[0][1] == "left" else f"{columns[0][0]}: {row[0]}")
+        for (name, _), cell in zip(columns[1:], row[1:], strict=True):
+            show_text(f"{name}: {cell}", indent="  ")
+
+
+def _terminal_width() -> int:
+    from rich.console import Console
+
+    return Console().width
 
 
 def show_text(text: str, indent: str = "") -> None:
@@ -64,7 +93,7 @@ def _print(renderable: object, limit: int | None = None) -> None:
     from rich.console import Console
 
     terminal = sys.stdout.isatty()
-    width = Console().width if terminal else _PIPE_WIDTH
+    width = _terminal_width() if terminal else _PIPE_WIDTH
     if terminal and limit is not None:
         width = min(width, limit)
     # rendered apart from stdout: rich pads to the full width, which a pipe must not see

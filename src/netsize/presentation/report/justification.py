@@ -25,6 +25,7 @@ _TESTS = {
     "factorial": "an F test of one effect in a factorial design",
     "repeated": "a repeated-measures F test",
     "regression": "an F test of the increment of R² in a regression",
+    "contingency": "a chi-square test of a contingency table",
 }
 
 

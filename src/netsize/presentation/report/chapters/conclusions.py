@@ -180,7 +180,11 @@ def cautions(material: Material) -> Section:
 
 def reproducibility(material: Material, source: Input, command: str, version: str) -> Section:
     """Version, input, settings, command."""
-    settings = material.plan.settings.to_dict()
+    priors = material.plan.literature.averaged.priors
+    settings = material.plan.settings.to_dict() | {
+        "effect_scale": priors.effect_scale,
+        "heterogeneity_scale": priors.heterogeneity_scale,
+    }
     design = {"design": material.plan.study.design.name} | settings.pop("design_options")
     choices = "; ".join(
         f"{name.replace('_', ' ')} {_choice(value)}"
