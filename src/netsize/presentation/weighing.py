@@ -10,7 +10,7 @@ from netsize.presentation.terminal import Column, show_list, show_table, show_te
 from netsize.synthesis.records import Estimate, number_of_results
 from netsize.synthesis.weighing import Weighing
 
-__all__ = ["paragraph", "show_weighing"]
+__all__ = ["limits", "paragraph", "show_weighing"]
 
 _ESTIMATORS: tuple[Column, ...] = (
     ("estimator", "left"),
@@ -60,7 +60,7 @@ def show_weighing(weighing: Weighing) -> None:
             for d in weighing.diagnostics
         ],
     )
-    show_list("What they can and cannot show:", _limits(weighing))
+    show_list("What they can and cannot show:", limits(weighing))
     if weighing.leave_one_out:
         show_text("")
         show_table(
@@ -257,9 +257,9 @@ def _remarks(weighing: Weighing) -> list[str]:
     return _together([(e.label, x) for e in weighing.estimators for x in e.reason.split("; ") if x])
 
 
-def _limits(weighing: Weighing) -> list[str]:
-    """The caution of each diagnostic."""
-    return _together([(d.label, _lower(d.limits)) for d in weighing.diagnostics])
+def limits(weighing: Weighing) -> list[str]:
+    """The caution of each diagnostic, with the names of those that it concerns."""
+    return _together([(d.label, _lower(d.limits)) for d in weighing.diagnostics if d.limits])
 
 
 def _together(pairs: Sequence[tuple[str, str]]) -> list[str]:

@@ -11,7 +11,7 @@ from netsize.presentation import format as fmt
 from netsize.presentation.report.chapters.parts import picture
 from netsize.presentation.report.content import Block, Cell, Column, Paragraph, Section, Table
 from netsize.presentation.report.material import Material
-from netsize.presentation.weighing import paragraph
+from netsize.presentation.weighing import limits, paragraph
 from netsize.synthesis.records import Estimate
 from netsize.synthesis.weighing import Weighing
 
@@ -105,7 +105,7 @@ def _diagnostics(weighing: Weighing) -> Table:
             )
             for d in weighing.diagnostics
         ),
-        notes=tuple(dict.fromkeys(d.limits for d in weighing.diagnostics if d.limits)),
+        notes=tuple(limits(weighing)),
     )
 
 
