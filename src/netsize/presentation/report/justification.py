@@ -30,7 +30,17 @@ _TESTS = {
 
 
 def one_sentence(plan: Plan) -> str:
-    """For an abstract."""
+    """For an abstract; a second sentence where the evidence speaks against an effect."""
+    negligible = plan.answer.probability_negligible
+    if negligible <= 0.5:
+        return _planned_sentence(plan)
+    return (
+        f"{_planned_sentence(plan)} The same evidence is better explained by no effect than by one "
+        f"(P(negligible effect) {fmt.stated(negligible)})."
+    )
+
+
+def _planned_sentence(plan: Plan) -> str:
     if not plan.answer.finite:
         return (
             f"From {_literature(plan)}, no finite sample size reaches {_power(plan)} with "
