@@ -425,3 +425,28 @@ def test_the_profile_does_not_depend_on_the_prior_of_the_effect():
     ]
     np.testing.assert_array_equal(values[0], values[1])
     np.testing.assert_array_equal(values[2], values[1])
+
+
+# Three cases worked beforehand on a coarse grid of the same model, so a check on the statement of
+# the model rather than an outside source: [20th percentile, median] of a new study's θ, and
+# P(negligible), whose coarse integration over ω was off by up to 0.02 either way (the brute force
+# above sides with the fine grid).
+WORKED = [
+    ([2.3, 2.5, 2.9, 2.2, 2.6], [20] * 5, 0.13, 0.37, 0.32),
+    (
+        [3.1, 2.8, 4.5, 3.9, 2.2, 5.1, 3.3, 1.5, 4.4, 3.7],
+        [30, 45, 60, 80, 25, 100, 50, 40, 70, 66],
+        0.53,
+        0.63,
+        0.00,
+    ),
+    ([2.3], [20], -0.02, 0.34, 0.54),
+]
+
+
+@pytest.mark.parametrize(("t", "n", "low", "median", "negligible"), WORKED)
+def test_cases_worked_beforehand_on_a_coarse_grid(t, n, low, median, negligible):
+    evidence = [two_groups(*pair) for pair in zip(t, n, strict=True)]
+    fit = fit_averaged(evidence, weights=np.ones(len(t)), metric=DIFFERENCE)
+    np.testing.assert_allclose(fit.new_study.quantile([0.2, 0.5]), [low, median], atol=0.015)
+    assert fit.probability_negligible == pytest.approx(negligible, abs=0.021)
