@@ -13,6 +13,7 @@ from netsize.planning.goals import Sized, size_for
 from netsize.planning.settings import PlanSettings
 from netsize.sizing.search import detectable_effect
 from netsize.sizing.study import Study
+from netsize.synthesis.records import plain
 
 __all__ = ["Alternative", "Answer", "answer"]
 
@@ -91,12 +92,12 @@ class Answer:
         return {
             "probability_negligible": self.probability_negligible,
             "share_negligible": self.share_negligible,
-            "value": _plain(self.value),
-            "quantile": _plain(self.quantile),
+            "value": plain(self.value),
+            "quantile": plain(self.quantile),
             "from_smallest_effect": self.from_smallest,
-            "median": _plain(self.median),
-            "low": _plain(self.low),
-            "high": _plain(self.high),
+            "median": plain(self.median),
+            "low": plain(self.low),
+            "high": plain(self.high),
             "assurance": self.assurance,
             "chance_significant": self.chance_significant,
             "ceiling": self.ceiling,
@@ -104,7 +105,7 @@ class Answer:
             "origin": self.origin,
             "alternatives": [a.to_dict() for a in self.alternatives],
             "percentiles": {
-                str(p): _plain(float(v)) for p, v in zip(percentiles, values, strict=True)
+                str(p): plain(float(v)) for p, v in zip(percentiles, values, strict=True)
             },
             "n_per_group": self.sized.to_dict()["n_per_group"],
             "n_total": self.sized.n_total,
@@ -203,8 +204,4 @@ def _detectable(study: Study, sized: Sized, settings: PlanSettings, scale: str) 
     if sized.n_total is None:
         return None
     own = detectable_effect(study, sized.units, settings.power)
-    return _plain(float(study.metric(scale).outward(own)))
-
-
-def _plain(value: float) -> float | None:
-    return value if np.isfinite(value) else None
+    return plain(float(study.metric(scale).outward(own)))

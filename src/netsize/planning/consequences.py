@@ -8,13 +8,13 @@ from typing import Any
 
 import numpy as np
 
-from netsize.numerics.arrays import Array
 from netsize.planning.answer import Answer
 from netsize.planning.evidence import Literature
 from netsize.planning.goals import power_at, units_within
 from netsize.planning.rows import Row
 from netsize.sizing.aftermath import aftermath
 from netsize.sizing.study import Study
+from netsize.synthesis.records import plain
 
 __all__ = ["Consequence", "Habit", "consequences", "habits"]
 
@@ -82,8 +82,8 @@ def consequences(
                 effect=effect,
                 n_total=naive.n_total,
                 power=float(power_at(study, naive.units, at)),
-                sign_error=_finite(after.sign_error),
-                exaggeration=_finite(after.exaggeration),
+                sign_error=plain(float(after.sign_error)),
+                exaggeration=plain(float(after.exaggeration)),
             )
         )
     return tuple(out)
@@ -126,7 +126,3 @@ def habits(literature: Literature, answer: Answer, study: Study, scale: str) -> 
 def _customary(study: Study) -> str:
     alone = study.groups(np.array(1.0)).size == 1
     return f"{_CUSTOM} participants" if alone else f"{_CUSTOM} per {study.design.group_word}"
-
-
-def _finite(value: Array) -> float | None:
-    return float(value) if np.isfinite(value) else None

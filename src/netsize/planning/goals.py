@@ -10,12 +10,15 @@ from numpy.typing import ArrayLike
 
 from netsize.errors import SettingError
 from netsize.numerics.arrays import Array, broadcast
+from netsize.numerics.search import smallest_integer
 from netsize.planning.settings import PlanSettings
 from netsize.sizing.precision import units_for_half_width
 from netsize.sizing.search import smallest_units
 from netsize.sizing.study import Study
 
 __all__ = ["Sized", "as_sized", "power_at", "size_for", "units_within"]
+
+_UNBOUNDED = 10**13  # units that no budget of a plan pays for
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -102,19 +105,14 @@ def units_within(study: Study, total: float, *, recruited: bool = False) -> int:
     """
     count = study.recruited if recruited else study.groups
 
-    def within(units: int) -> bool:
-        return float(count(np.array(float(units))).sum()) <= total
-
-    if not within(study.first):
-        return 0
-    high = study.first
-    while within(high * 2):
-        high *= 2
-    low, high = high, high * 2
-    while high - low > 1:
-        middle = (low + high) // 2
-        low, high = (middle, high) if within(middle) else (low, middle)
-    return low
+    beyond, _ = smallest_integer(
+        lambda units, most: np.asarray(count(units).sum(axis=0) > most),
+        np.asarray(float(total)),
+        first=study.first,
+        last=_UNBOUNDED,
+    )
+    fit = int(beyond) - 1
+    return fit if fit >= study.first else 0
 
 
 def power_at(study: Study, units: ArrayLike, effect: Array) -> Array:

@@ -22,7 +22,7 @@ from netsize.planning.study import METRIC_OF, metric_for, study_for
 from netsize.reported.records import Reading, ReportedResult
 from netsize.sizing.study import Study
 from netsize.synthesis.corrections import correct
-from netsize.synthesis.records import Estimate
+from netsize.synthesis.records import Estimate, plain
 
 if TYPE_CHECKING:
     import pandas as pd
@@ -125,8 +125,8 @@ class Plan:
                     "printed": row.printed,
                     "estimate": row.estimate,
                     "variance": row.variance,
-                    "low": _finite(row.low),
-                    "high": _finite(row.high),
+                    "low": plain(row.low),
+                    "high": plain(row.high),
                     "p": row.p,
                     "n": row.n,
                     "assumptions": list(row.assumptions),
@@ -239,8 +239,4 @@ def _answer(
 
 def _summary(distribution: GridDistribution) -> dict[str, float | None]:
     low, median, high = distribution.quantile(np.array([0.025, 0.5, 0.975]))
-    return {"low": _finite(low), "median": _finite(median), "high": _finite(high)}
-
-
-def _finite(value: float) -> float | None:
-    return float(value) if np.isfinite(value) else None
+    return {"low": plain(low), "median": plain(median), "high": plain(high)}

@@ -20,7 +20,7 @@ from netsize.planning.settings import PlanSettings
 from netsize.sizing.aftermath import aftermath
 from netsize.sizing.precision import expected_half_width, has_interval
 from netsize.sizing.study import Study
-from netsize.synthesis.records import Estimate
+from netsize.synthesis.records import Estimate, plain
 
 __all__ = ["Row", "plan_rows"]
 
@@ -134,16 +134,16 @@ def plan_rows(
         Row(
             key=r.key,
             label=r.label,
-            effect=_plain(r.effect),
-            low=_plain(r.low),
-            high=_plain(r.high),
-            limit=_plain(limit),
+            effect=plain(r.effect),
+            low=plain(r.low),
+            high=plain(r.high),
+            limit=plain(limit),
             sized=s,
-            power=_plain(float(reached[i])),
-            half_width=_plain(float(widths[i])),
-            sign_error=_plain(float(after.sign_error[i])),
-            exaggeration=_plain(float(after.exaggeration[i])),
-            power_of_naive_n=_plain(float(powers[i])),
+            power=plain(float(reached[i])),
+            half_width=plain(float(widths[i])),
+            sign_error=plain(float(after.sign_error[i])),
+            exaggeration=plain(float(after.exaggeration[i])),
+            power_of_naive_n=plain(float(powers[i])),
             note=r.note,
         )
         for i, (r, limit, s) in enumerate(zip(readings, limits, sized, strict=True))
@@ -289,7 +289,3 @@ def _profile(literature: Literature, settings: PlanSettings) -> _Reading:
         cautious=cautious,
         note="" if np.isfinite(profile.estimate) else "no finite maximum",
     )
-
-
-def _plain(value: float | None) -> float | None:
-    return value if value is not None and np.isfinite(value) else None

@@ -8,6 +8,7 @@ import shutil
 import sys
 from collections.abc import Sequence
 
+from netsize.presentation.csv_cells import harmless
 from netsize.presentation.format import MISSING
 from netsize.presentation.terminal import Column, show_list, show_table, show_text
 from netsize.reported.check import Finding
@@ -30,7 +31,6 @@ _COLUMNS: tuple[Column, ...] = (
     ("check", "left"),
 )
 _NARROW = 100  # columns of text below which seven table columns cannot be read
-_FORMULA_STARTERS = ("=", "+", "-", "@", "\t", "\r")
 
 
 def show_reading(reading: Reading, findings: Findings) -> None:
@@ -61,8 +61,8 @@ def show_reading(reading: Reading, findings: Findings) -> None:
         [f"{r.label}: {r.left_out}" for r in results if r.left_out is not None],
     )
     show_text(_summary(reading))
-    for title, harmless in (("Passed over, being no statistic:", True), ("Not understood:", False)):
-        show_list(title, [unread_place(u) for u in reading.unread if u.harmless is harmless])
+    for title, passed in (("Passed over, being no statistic:", True), ("Not understood:", False)):
+        show_list(title, [unread_place(u) for u in reading.unread if u.harmless is passed])
 
 
 def write_reading_csv(reading: Reading, findings: Findings) -> None:
@@ -222,6 +222,4 @@ def _summary(reading: Reading) -> str:
 
 def _harmless(cell: str) -> str:
     """Nothing for what is missing; spreadsheets must not run a label as a formula."""
-    if cell == MISSING:
-        return ""
-    return f"'{cell}" if cell.startswith(_FORMULA_STARTERS) else cell
+    return "" if cell == MISSING else harmless(cell)
